@@ -1,0 +1,81 @@
+/** One place for how the application is built and served. */
+export default defineNuxtConfig({
+  compatibilityDate: '2026-01-01',
+  telemetry: false,
+  devtools: { enabled: false },
+  modules: ['@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security', '@nuxt/eslint'],
+  css: ['~/assets/css/fonts.css'],
+  tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
+  components: [{ path: '~/components', pathPrefix: false }],
+  app: {
+    head: {
+      htmlAttrs: { lang: 'en' },
+      title: 'Moorage',
+      meta: [{ name: 'viewport', content: 'width=device-width, initial-scale=1' }],
+    },
+  },
+  runtimeConfig: {
+    /** Application role's address, e.g. postgresql://moorage_app:…@127.0.0.1:5432/moorage (env NUXT_DATABASE_URL). */
+    databaseUrl: '',
+    /** scrypt cost; never below N = 2^17, r = 8, p = 1 outside tests. */
+    passwordHash: { cost: 131072, blockSize: 8, parallelization: 1 },
+    /** Failed sign-ins before answers are slowed, per account and per address, within the window. Tests set them. */
+    throttle: { windowSeconds: 900, perAccount: 5, perAddress: 30, slowMilliseconds: 1000, refuseAfter: 100 },
+    /** What a browser may send at most [bytes]. */
+    bodyLimitBytes: 262_144,
+    runBodyLimitBytes: 8_388_608,
+    /** Accounts are printed and offered on the sign-in page only on loopback. */
+    demoAccounts: false,
+    hash: {},
+    public: {},
+  },
+  routeRules: {
+    '/_nuxt/**': { headers: { 'cross-origin-embedder-policy': 'require-corp', 'cross-origin-resource-policy': 'same-origin' } },
+  },
+  security: {
+    nonce: true,
+    rateLimiter: false,
+    requestSizeLimiter: false,
+    xssValidator: false,
+    headers: {
+      crossOriginEmbedderPolicy: 'require-corp',
+      contentSecurityPolicy: {
+        'default-src': ['\'self\''],
+        'base-uri': ['\'none\''],
+        'connect-src': ['\'self\''],
+        'font-src': ['\'self\''],
+        'form-action': ['\'self\''],
+        'frame-ancestors': ['\'none\''],
+        'img-src': ['\'self\'', 'data:', 'blob:'],
+        'object-src': ['\'none\''],
+        'script-src': ['\'self\'', '\'nonce-{{nonce}}\'', '\'strict-dynamic\'', '\'wasm-unsafe-eval\''],
+        'script-src-attr': ['\'none\''],
+        'style-src': ['\'self\'', '\'unsafe-inline\''],
+        'worker-src': ['\'self\''],
+        'upgrade-insecure-requests': false,
+      },
+    },
+  },
+  nitro: {
+    preset: 'node-server',
+    compressPublicAssets: { gzip: true, brotli: true },
+  },
+  experimental: { defaults: { nuxtLink: { prefetch: false } } },
+  vite: {
+    worker: { format: 'es' },
+    build: { target: 'es2022' },
+  },
+  vue: {
+    compilerOptions: { isCustomElement: tag => (tag.startsWith('Tres') && tag !== 'TresCanvas') || tag === 'primitive' },
+  },
+  typescript: {
+    strict: true,
+    tsConfig: {
+      include: ['../workers/**/*.ts', '../tests/**/*.ts'],
+      exclude: ['../workers/kernel/assembly/**'],
+      compilerOptions: { noUncheckedIndexedAccess: true },
+    },
+    nodeTsConfig: { include: ['../scripts/**/*', '../*.config.ts'] },
+  },
+  eslint: { config: { stylistic: { braceStyle: '1tbs' } } },
+})
