@@ -1,0 +1,12 @@
+/** Every table, for the client and for the migration generator. */
+export * from './audit-events'
+export * from './benches'
+export * from './memberships'
+export * from './run-blocks'
+export * from './runs'
+export * from './scenario-revisions'
+export * from './scenarios'
+export * from './sessions'
+export * from './tags'
+export * from './throttles'
+export * from './users'
