@@ -28,7 +28,9 @@ export interface WalkPlan {
   supply: 'stirred' | 'held' | 'sealed'
   crowding: 'independent' | 'exclusive'
   /** Inner voxels per axis (all 0 when stirred). Padded arrays have (nx+2)(ny+2)(nz+2) entries, index p = (z·PY + y)·PX + x over padded coordinates. */
-  nx: number, ny: number, nz: number
+  nx: number
+  ny: number
+  nz: number
   /** Per padded voxel: 0 free, 1 reflecting, 2 wall or plate that carries sites, 3 outer voxel that exchanges with the bath. */
   flags: Uint8Array
   /** site number behind padded voxel p for a hop of direction d (+x −x +y −y +z −z) at [6p + d], or −1. */
