@@ -1,8 +1,11 @@
 /** One place for how the application is built and served. */
+import { fileURLToPath } from 'node:url'
+
 export default defineNuxtConfig({
   compatibilityDate: '2026-01-01',
   telemetry: false,
   devtools: { enabled: false },
+  auth: { loadStrategy: 'none' },
   modules: ['@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security', '@nuxt/eslint'],
   css: ['~/assets/css/fonts.css'],
   tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
@@ -17,8 +20,12 @@ export default defineNuxtConfig({
   runtimeConfig: {
     /** Application role's address, e.g. postgresql://moorage_app:…@127.0.0.1:5432/moorage (env NUXT_DATABASE_URL). */
     databaseUrl: '',
-    /** scrypt cost; never below N = 2^17, r = 8, p = 1 outside tests. */
-    passwordHash: { cost: 131072, blockSize: 8, parallelization: 1 },
+    /** scrypt; never below N = 2^17, r = 8, p = 1. Node refuses work above maxMemory [bytes]; N·r·128 bytes are needed. */
+    hash: { scrypt: { cost: 131_072, blockSize: 8, parallelization: 1, maxMemory: 268_435_456 } },
+    /** The cookie carries a sealed random key only; sessions themselves stand in the database (env NUXT_SESSION_PASSWORD seals it). */
+    session: { name: 'moorage-session', password: '', maxAge: 2_592_000, cookie: { sameSite: 'lax' } },
+    /** Set only behind a proxy of your own: X-Forwarded-For then names the other end. */
+    trustProxy: false,
     /** Failed sign-ins before answers are slowed, per account and per address, within the window. Tests set them. */
     throttle: { windowSeconds: 900, perAccount: 5, perAddress: 30, slowMilliseconds: 1000, refuseAfter: 100 },
     /** What a browser may send at most [bytes]. */
@@ -26,8 +33,16 @@ export default defineNuxtConfig({
     runBodyLimitBytes: 8_388_608,
     /** Accounts are printed and offered on the sign-in page only on loopback. */
     demoAccounts: false,
-    hash: {},
-    public: {},
+    public: {
+      /** The accounts of the invented bench are offered on the sign-in page; set on loopback only (NUXT_PUBLIC_DEMO_ACCOUNTS). */
+      demoAccounts: false,
+    },
+  },
+  hooks: {
+    // Ours comes first and answers /api; Nuxt's own goes on writing the error page.
+    'nitro:config'(config) {
+      config.errorHandler = [fileURLToPath(new URL('./server/error.ts', import.meta.url)), ...[config.errorHandler ?? []].flat()]
+    },
   },
   routeRules: {
     '/_nuxt/**': { headers: { 'cross-origin-embedder-policy': 'require-corp', 'cross-origin-resource-policy': 'same-origin' } },
