@@ -20,6 +20,8 @@ export interface Me {
   mail: string
   name: string
   benches: { benchId: string, name: string, role: Role }[]
+  /** Only in the answer to a sign-in: wrong pass phrases since the one before. */
+  failedSignIns?: { count: number, lastAt: string }
 }
 /** GET /api/account/sessions · DELETE /api/account/sessions (sign out everywhere) · POST /api/account/sign-out */
 export interface SessionRow { sessionId: string, startedAt: string, lastSeenAt: string, agent: string, current: boolean }

@@ -29,6 +29,10 @@ export const RunSaveSchema = z.strictObject({
   durationMs: z.number().nonnegative(),
   workers: z.number().int().min(1).max(64),
 })
+/** GET …/runs?bin=0|1&cursor=&limit= */
+export const RunListSchema = z.strictObject({
+  bin: z.enum(['0', '1']).default('0'), cursor: z.string().max(500).default(''), limit: z.coerce.number().int().min(1).max(100).default(25),
+})
 export type RunSave = z.infer<typeof RunSaveSchema>
 
 /** `waiting`: audit not done yet · `audited`: redrawn blocks were equal · `refused`: a redrawn block differed, not reproducible · `cannot`: engine version unknown here. */

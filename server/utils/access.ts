@@ -1,0 +1,46 @@
+/** Every handler says in its first line who may come: `publicRoute`, `signedIn` or `requireMember`. `routes.ts` lists the same for all. */
+import { getRouterParam, type H3Event } from 'h3'
+import { may, type Action, type Role } from '../../shared/permissions'
+import { findBenchScope, findRunScope, findScenarioScope, type Scope } from '../services/scopes'
+import type { Person } from '../services/sessions'
+import { idParam } from './input'
+import { personOf } from './person'
+import { problem } from './problem'
+
+/** Someone with a role on the bench that the request is about, allowed to do what it asks. */
+export interface Member extends Person { benchId: string, role: Role, itemId: string }
+
+/** Open to strangers. */
+export function publicRoute(_event: H3Event): void {}
+
+export async function signedIn(event: H3Event): Promise<Person> {
+  const person = await personOf(event)
+  if (!person) throw problem('sign_in_first')
+  return person
+}
+
+/** Actions that make something new: whose the item in the path is does not matter. */
+const MAKES_NEW = new Set<Action>(['scenario.create', 'run.save'])
+
+/**
+ * The person as a member of the bench behind the path, or a refusal: 401 signed out · 404 what they may not know of ·
+ * 403 what they may read but not do.
+ * @param options - `bin`: also items in the bin
+ */
+export async function requireMember(event: H3Event, action: Action, options: { bin?: boolean } = {}): Promise<Member> {
+  const person = await signedIn(event)
+  const scope = await scopeOf(event, person.userId)
+  if (!scope?.role || (scope.deleted && !options.bin)) throw problem('not_found')
+  const item = scope.kind === 'bench' ? undefined : { owns: scope.ownerId === person.userId, shared: false }
+  if (item && !may(scope.role, scope.kind === 'run' ? 'run.read' : 'scenario.read', item)) throw problem('not_found')
+  if (!may(scope.role, action, MAKES_NEW.has(action) ? undefined : item)) throw problem('not_allowed')
+  return { ...person, benchId: scope.benchId, role: scope.role, itemId: scope.itemId }
+}
+
+/** The innermost thing that the path names decides. */
+function scopeOf(event: H3Event, userId: string): Promise<Scope | undefined> {
+  const db = useDatabase()
+  if (getRouterParam(event, 'runId') !== undefined) return findRunScope(db, idParam(event, 'runId'), userId)
+  if (getRouterParam(event, 'scenarioId') !== undefined) return findScenarioScope(db, idParam(event, 'scenarioId'), userId)
+  return findBenchScope(db, idParam(event, 'benchId'), userId)
+}
