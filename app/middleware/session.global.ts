@@ -1,6 +1,7 @@
-/** Asks once who is signed in, before the first page is drawn; then only pages marked `signedIn` turn a stranger away. */
+/** Asks once who is signed in, before the first page is drawn; every page but the open ones turns a stranger to the sign-in. */
 export default defineNuxtRouteMiddleware(async (to) => {
   const session = useSessionStore()
   if (!session.known) await session.load()
-  if (to.meta.signedIn && session.known && !session.me) return navigateTo({ path: '/sign-in', query: { to: to.fullPath } })
+  const closed = to.matched.length > 0 && !to.meta.open
+  if (closed && session.known && !session.me) return navigateTo({ path: '/sign-in', query: { to: to.fullPath } })
 })
