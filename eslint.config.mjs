@@ -10,5 +10,14 @@ const { default: withNuxt } = await import('./.nuxt/eslint.config.mjs')
 
 export default withNuxt(
   { ignores: ['workers/kernel/assembly/**', '.output/**', '.data/**', 'drizzle/**', 'public/**'] },
-  { rules: { 'vue/multi-word-component-names': 'off' } },
+  {
+    rules: {
+      'vue/multi-word-component-names': 'off',
+      // Short members and attributes may share a line; a line has a meaning, not a count.
+      'vue/max-attributes-per-line': 'off',
+      'vue/singleline-html-element-content-newline': 'off',
+      '@stylistic/member-delimiter-style': 'off',
+      '@stylistic/max-statements-per-line': 'off',
+    },
+  },
 )

@@ -40,13 +40,13 @@ const NAMES: Record<string, FieldName> = {
   'schedule.decline.timeConstantS': { label: 'Decline: time constant', unit: 's' },
 }
 const CLASS_NAMES: Record<string, FieldName> = {
-  'name': { label: 'name', unit: '' },
-  'share': { label: 'share', unit: '' },
-  'attachProbability': { label: 'attachment', symbol: 's', unit: 'per hit' },
-  'detachPerS': { label: 'letting go', unit: '1/s' },
-  'readyPerS': { label: 'becoming ready', unit: '1/s' },
-  'attachFactor': { label: 'factor on attachment', unit: 'of s' },
-  'mobilityFactor': { label: 'mobility', unit: 'of D' },
+  name: { label: 'name', unit: '' },
+  share: { label: 'share', unit: '' },
+  attachProbability: { label: 'attachment', symbol: 's', unit: 'per hit' },
+  detachPerS: { label: 'letting go', unit: '1/s' },
+  readyPerS: { label: 'becoming ready', unit: '1/s' },
+  attachFactor: { label: 'factor on attachment', unit: 'of s' },
+  mobilityFactor: { label: 'mobility', unit: 'of D' },
 }
 const RELEASE_NAMES: Record<string, FieldName> = {
   atMs: { label: 'at', unit: 'ms' },

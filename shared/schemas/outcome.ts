@@ -2,7 +2,6 @@
 import { z } from 'zod'
 
 const number = z.number()
-const interval = z.strictObject({ value: number, low: number, high: number })
 const maybe = z.strictObject({ value: number.nullable(), low: number.nullable(), high: number.nullable() })
 
 export const OutcomeClassSchema = z.strictObject({
@@ -63,6 +62,6 @@ export const OutcomeSchema = z.strictObject({
   partial: z.boolean(),
   digest: z.string(),
 })
-export type Interval = z.infer<typeof interval>
+export interface Interval { value: number, low: number, high: number }
 export type Outcome = z.infer<typeof OutcomeSchema>
 export type OutcomeClass = z.infer<typeof OutcomeClassSchema>

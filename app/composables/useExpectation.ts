@@ -1,0 +1,61 @@
+/** What to expect of the scenario under the pen: closed form at once, a quick walk of fixed seed behind it. */
+import { closedForm } from '#shared/kinetics/closed-form'
+import type { Outcome } from '#shared/schemas/outcome'
+import type { Scenario } from '#shared/schemas/scenario'
+import { buildOutcome } from '#shared/walk/outcome'
+import { previewRefusal } from '#shared/walk/cost'
+import { closedFormSeries, walkSeries } from '~/utils/expectedCurves'
+
+export type PreviewState = 'walking' | 'drawn' | 'too-large' | 'failed'
+/** Enough for a mean to about ±0.01 of the sites, few enough to follow the typing. */
+export const PREVIEW_REPLICATES = 60
+/** Typing pauses shorter than this do not start a walk [ms]. */
+const SETTLE_MS = 25
+
+export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonly<Ref<Scenario | null>>) {
+  const crew = useCrew()
+  const preview = shallowRef<Outcome | null>(null)
+  const previewState = shallowRef<PreviewState>('walking')
+  const previewReason = shallowRef('')
+  const formula = computed(() => closedForm(scenario.value))
+  const savedFormula = computed(() => saved.value ? closedForm(saved.value) : null)
+  const sites = computed(() => formula.value.classes.reduce((sum, one) => sum + one.sites, 0))
+
+  let asked = 0
+  async function walk(one: Scenario) {
+    const mine = ++asked
+    const refusal = previewRefusal(one)
+    if (refusal) {
+      preview.value = null
+      previewState.value = 'too-large'
+      previewReason.value = refusal
+      return
+    }
+    previewState.value = 'walking'
+    try {
+      const result = await crew.preview(one, PREVIEW_REPLICATES)
+      if (mine !== asked || !result) return
+      preview.value = buildOutcome({ scenario: one, ...result })
+      previewState.value = 'drawn'
+      performance.mark('moorage:preview-drawn')
+    } catch {
+      if (mine === asked) previewState.value = 'failed'
+    }
+  }
+  let timer: ReturnType<typeof setTimeout> | undefined
+  onMounted(() => watch(scenario, (one) => {
+    clearTimeout(timer)
+    timer = setTimeout(() => walk(one), SETTLE_MS)
+  }, { immediate: true }))
+  onScopeDispose(() => clearTimeout(timer))
+
+  const series = computed(() => {
+    const before = saved.value && savedFormula.value
+      ? [closedFormSeries(saved.value, savedFormula.value.classes.reduce((sum, one) => sum + one.sites, 0), 'earlier', 'Closed form, saved revision')]
+      : []
+    const walked = preview.value ? [walkSeries(preview.value, 'preview', `Preview walk, ${preview.value.replicates} replicates`)] : []
+    return [...before, closedFormSeries(scenario.value, sites.value, 'closed-form', 'Closed form'), ...walked]
+  })
+  return { formula, savedFormula, sites, series, preview: readonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
+}
+export type Expectation = ReturnType<typeof useExpectation>

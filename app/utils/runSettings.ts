@@ -1,0 +1,14 @@
+/** What a person chooses about a run before setting it going; not part of the scenario. */
+import type { AskedAlgorithm } from '#shared/walk/types'
+
+export interface RunSettings {
+  aim: 'replicates' | 'precision'
+  replicates: number
+  /** A replicates text that could not be used, kept as typed. */
+  wrongReplicates?: string
+  /** Wanted standard error of the ratio walk / closed form [1]. */
+  standardError: number
+  seed: string
+  algorithm: AskedAlgorithm
+}
+export const DEFAULT_RUN: RunSettings = { aim: 'replicates', replicates: 200, standardError: 0.01, seed: '', algorithm: 'auto' }
