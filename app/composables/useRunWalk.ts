@@ -1,0 +1,127 @@
+/** Drives one run through the crew: progress, Monte Carlo error, partial outcomes at intervals, the finished one. */
+import { frameOf } from '#shared/walk/frame'
+import { blockRanges } from '#shared/walk/merge'
+import { estimateCost } from '#shared/walk/cost'
+import { RatioPrecision } from '#shared/walk/tallies'
+import type { EngineId, ReplicateBlock } from '#shared/walk/types'
+import type { RunProgress, RunResult } from '~~/workers/protocol'
+import { KERNEL_VERSION } from '~~/workers/kernel/version'
+import type { LocalRun } from '~/utils/localRun'
+import type { Desk } from '~/composables/useOutcomeDesk'
+
+/** A partial outcome is made at most this often [ms], and takes at most a fifth of the time between two. */
+const PARTIAL_EVERY_MS = 800
+
+/** Only the per-replicate rows from a replicate on: what the Monte Carlo error reads. */
+function rowsFrom(block: ReplicateBlock, from: number): ReplicateBlock {
+  const cut = (rows: number[][]) => rows.map(row => row.slice(from - block.from))
+  return { ...block, from, events: cut(block.events), exposureSteps: cut(block.exposureSteps), ...(block.declinedExposure ? { declinedExposure: cut(block.declinedExposure) } : {}) }
+}
+
+/** The books of one run while it is walked: whole blocks go to the desk, the one under way is only looked at. */
+class WalkBooks {
+  /** Whole blocks and, at the end, a last one that may be cut short. */
+  blocks: ReplicateBlock[] = []
+  tail: ReplicateBlock | undefined
+  private readonly precision: RatioPrecision
+  private readonly ends: Set<number>
+  private read = 0
+  private pending: Promise<unknown> = Promise.resolve()
+
+  constructor(private readonly run: LocalRun, private readonly desk: Desk) {
+    const { asked } = run
+    this.precision = new RatioPrecision(frameOf(asked.scenario))
+    this.ends = new Set((asked.ranges ?? blockRanges(asked.replicates)).map(range => range.to))
+  }
+
+  /** Takes what there is; a cut last block is entered only at the end. */
+  take(all: readonly ReplicateBlock[], atEnd: boolean): void {
+    const entered = atEnd ? [...all] : all.filter(block => this.ends.has(block.to))
+    const fresh = entered.slice(this.blocks.length)
+    this.blocks = entered
+    this.tail = all.length > entered.length ? all.at(-1) : undefined
+    if (fresh.length > 0) this.pending = this.pending.then(() => this.desk.add(this.run.localId, fresh))
+    this.measure(all)
+  }
+
+  private measure(all: readonly ReplicateBlock[]): void {
+    const end = all.at(-1)?.to ?? 0
+    if (end === this.read) return
+    for (const block of all) if (block.to > this.read) this.precision.add(rowsFrom(block, Math.max(block.from, this.read)))
+    this.read = end
+    const found = this.precision.read()
+    if (found) this.run.precision = [...this.run.precision, { replicates: found.replicates, standardError: found.standardError }]
+  }
+
+  async outcome(engine: EngineId, partial: boolean, landingError: number, withTail: boolean) {
+    await this.pending
+    return this.desk.outcome(this.run.localId, { engine, partial, landingError }, withTail ? this.tail : undefined)
+  }
+}
+
+export function useRunWalk() {
+  const crew = useCrew()
+
+  async function walk(run: LocalRun, signal: AbortSignal): Promise<ReplicateBlock[]> {
+    const { asked } = run
+    const desk = await useOutcomeDesk()
+    await desk.open(run.localId, asked.scenario, asked.seed)
+    const books = new WalkBooks(run, desk)
+    const engine: EngineId = { name: 'moorage-walk', version: KERNEL_VERSION, algorithm: estimateCost(asked.scenario, asked.replicates, asked.algorithm).algorithm ?? 'step' }
+    run.engine = engine
+    let nextAt = 0
+    let idle = true
+
+    async function partial() {
+      idle = false
+      const startedAt = performance.now()
+      try {
+        const outcome = await books.outcome(engine, true, 0, true)
+        if (run.state === 'running') run.outcome = outcome
+      } finally {
+        const now = performance.now()
+        nextAt = now + Math.max(PARTIAL_EVERY_MS, 4 * (now - startedAt))
+        idle = true
+      }
+    }
+    function onProgress(progress: RunProgress) {
+      Object.assign(run, { replicatesDone: progress.replicatesDone, elapsedMs: progress.elapsedMs, remainingMs: progress.remainingMs, workers: progress.workers })
+      books.take(progress.blocks, false)
+      if (progress.blocks.length > 0 && idle && performance.now() > nextAt) void partial()
+    }
+
+    let result: RunResult | undefined
+    try {
+      result = await crew.run({
+        scenario: asked.scenario, seed: asked.seed, replicates: asked.replicates, algorithm: asked.algorithm,
+        ...(asked.ranges && { ranges: asked.ranges }),
+        ...(asked.targetStandardError !== undefined && { targetStandardError: asked.targetStandardError }),
+      }, { onProgress, signal })
+      books.take(result.blocks, true)
+    } catch (thrown) {
+      const kept = books.blocks.length > 0 ? 'The replicates before it are kept as a partial outcome.' : 'Nothing was kept.'
+      run.problem = `The walk broke off: ${thrown instanceof Error ? thrown.message : String(thrown)} ${kept}`
+    }
+    await finish(run, result, books)
+    return books.blocks
+  }
+
+  async function finish(run: LocalRun, result: RunResult | undefined, books: WalkBooks) {
+    run.engine = result?.engine ?? run.engine
+    run.landingError = result?.landingError ?? 0
+    run.durationMs = result?.durationMs ?? run.elapsedMs
+    run.workers = result?.workers ?? run.workers
+    const partial = result?.partial ?? true
+    if (books.blocks.length > 0) {
+      run.outcome = await books.outcome(run.engine!, partial, run.landingError, false)
+      run.replicatesDone = run.outcome.replicates
+    } else {
+      run.outcome = null
+      run.problem ??= 'It was stopped before a replicate was complete, so nothing was kept.'
+    }
+    run.finishedAt = new Date().toISOString()
+    run.stopping = false
+    run.state = result ? (partial ? 'stopped' : 'done') : 'failed'
+  }
+  return { walk }
+}
