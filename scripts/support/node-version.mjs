@@ -2,27 +2,37 @@
 import { readFileSync } from 'node:fs'
 import { Refusal } from './say.mjs'
 
-const asNumbers = version => version.replace(/^v/, '').split('.').map(Number)
+/** Numbers of a version; parts that are left out or written x are dropped. */
+const asNumbers = version => version.replace(/^v/, '').split('.').filter(part => /^\d+/.test(part)).map(part => Number.parseInt(part, 10))
 
-function atLeast(version, floor) {
-  for (let i = 0; i < 3; i += 1) {
-    if (version[i] !== (floor[i] ?? 0)) return version[i] > (floor[i] ?? 0)
-  }
-  return true
+/** Below, equal or above: -1, 0, 1; only as many parts count as the rule names. */
+function compare(version, rule) {
+  for (let i = 0; i < rule.length; i += 1)
+    if (version[i] !== rule[i]) return version[i] > rule[i] ? 1 : -1
+  return 0
+}
+
+const RULES = {
+  '>=': (have, rule) => compare(have, rule) >= 0,
+  '<=': (have, rule) => compare(have, rule) <= 0,
+  '>': (have, rule) => compare(have, rule) > 0,
+  '<': (have, rule) => compare(have, rule) < 0,
+  '^': (have, rule) => compare(have, rule) >= 0 && have[0] === rule[0],
+  '~': (have, rule) => compare(have, rule) >= 0 && compare(have, rule.slice(0, 2)) === 0,
+  '': (have, rule) => compare(have, rule) === 0,
 }
 
 /**
- * Whether a version lies in a range such as ">=20.19.0 <21 || >=22.12.0" (only these two comparisons are read).
+ * Whether a version lies in a range of npm's kind, such as ">=20.19.0 <21 || ^22.12.0".
  * @param {string} version such as v20.20.2
  * @param {string} range as in package.json
  */
 export function versionAllowed(version, range) {
   const have = asNumbers(version)
-  return range.split('||').some(part => part.trim().split(/\s+/).every((rule) => {
-    if (rule.startsWith('>=')) return atLeast(have, asNumbers(rule.slice(2)))
-    if (rule.startsWith('<')) return !atLeast(have, asNumbers(rule.slice(1)))
-    return false
-  }))
+  return range.split('||').some((part) => {
+    const rules = [...part.matchAll(/(>=|<=|>|<|\^|~|)\s*v?(\d+(?:\.(?:\d+|x|\*))*|\*)/g)]
+    return rules.every(([, sign, text]) => RULES[sign](have, asNumbers(text)))
+  })
 }
 
 /** Refuses a Node that is too old, before anything else is tried. */
