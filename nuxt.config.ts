@@ -1,5 +1,6 @@
 /** One place for how the application is built and served. */
 import { fileURLToPath } from 'node:url'
+import { examinerBundle } from './server/jobs/bundle'
 
 export default defineNuxtConfig({
   compatibilityDate: '2026-01-01',
@@ -31,6 +32,8 @@ export default defineNuxtConfig({
     /** What a browser may send at most [bytes]. */
     bodyLimitBytes: 262_144,
     runBodyLimitBytes: 8_388_608,
+    /** Time for walking one saved run's blocks again; one block is always walked, blocks under way are finished [ms]. */
+    auditBudgetMs: 20_000,
     /** Accounts are printed and offered on the sign-in page only on loopback. */
     demoAccounts: false,
     public: {
@@ -74,6 +77,8 @@ export default defineNuxtConfig({
   nitro: {
     preset: 'node-server',
     compressPublicAssets: { gzip: true, brotli: true },
+    esbuild: { options: { target: 'es2022' } },
+    rollupConfig: { plugins: [examinerBundle()], output: {} as never },
   },
   experimental: { defaults: { nuxtLink: { prefetch: false } } },
   vite: {
