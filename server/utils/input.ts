@@ -11,17 +11,17 @@ function judge<Schema extends z.ZodType>(given: unknown, schema: Schema): z.outp
   return parsed.data
 }
 
-/** JSON body of a request, by schema. `limitBytes` only where more than the usual is taken. */
-export async function readInput<Schema extends z.ZodType>(event: H3Event, schema: Schema, limitBytes?: number): Promise<z.output<Schema>> {
-  return judge((await readJson(event, limitBytes)).parsed, schema)
-}
-
-/** Parsed and raw: the raw bytes make the fingerprint of an idempotent request. */
-export async function readJson(event: H3Event, limitBytes = useRuntimeConfig().bodyLimitBytes): Promise<{ parsed: unknown, raw: Buffer }> {
+/** The bytes of a JSON body, capped, not parsed yet. `limitBytes` only where more than the usual is taken. */
+export async function readRaw(event: H3Event, limitBytes = useRuntimeConfig(event).bodyLimitBytes): Promise<Buffer> {
   const type = (getHeader(event, 'content-type') ?? '').split(';')[0]!.trim().toLowerCase()
   const encoding = getHeader(event, 'content-encoding') ?? 'identity'
   if (type !== 'application/json' || encoding !== 'identity') throw problem('wrong_type')
-  const raw = await readCapped(event, limitBytes)
+  return readCapped(event, limitBytes)
+}
+
+/** JSON body of a request, by schema. */
+export async function readInput<Schema extends z.ZodType>(event: H3Event, schema: Schema): Promise<z.output<Schema>> {
+  const raw = await readRaw(event)
   let parsed: unknown
   try {
     parsed = JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(raw))
@@ -29,10 +29,8 @@ export async function readJson(event: H3Event, limitBytes = useRuntimeConfig().b
     throw problem('malformed_json')
   }
   lookOver(parsed)
-  return { parsed, raw }
+  return judge(parsed, schema)
 }
-
-export const judgeInput = judge
 
 /** Query string, by schema. */
 export function readQuery<Schema extends z.ZodType>(event: H3Event, schema: Schema): z.output<Schema> {

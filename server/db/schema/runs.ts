@@ -2,11 +2,15 @@
 import { sql } from 'drizzle-orm'
 import { boolean, check, doublePrecision, foreignKey, index, integer, jsonb, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core'
 import type { Outcome } from '../../../shared/schemas/outcome'
+import type { BenchHome } from '../../../shared/schemas/api/bench'
 import type { Algorithm } from '../../../shared/walk/types'
 import { benches } from './benches'
 import { key, moment, now } from './columns'
 import { scenarioRevisions } from './scenario-revisions'
 import { users } from './users'
+
+type LastRun = NonNullable<BenchHome['scenarios'][number]['lastRun']>
+export type RunSummary = Pick<LastRun, 'ratio' | 'verdict' | 'classes' | 'curve'>
 
 export const runs = pgTable('runs', {
   runId: key('run_id'),
@@ -21,7 +25,11 @@ export const runs = pgTable('runs', {
   engineVersion: text('engine_version').notNull(),
   algorithm: text('algorithm').$type<Algorithm>().notNull(),
   outcome: jsonb('outcome').$type<Outcome>().notNull(),
+  /** What lists show of the outcome, so that no list unpacks whole outcomes. */
+  summary: jsonb('summary').$type<RunSummary>().notNull(),
   digest: text('digest').notNull(),
+  /** How many blocks stand behind it. */
+  blocks: integer('blocks').notNull(),
   durationMs: doublePrecision('duration_ms').notNull(),
   workers: integer('workers').notNull(),
   savedBy: uuid('saved_by').notNull().references(() => users.userId),

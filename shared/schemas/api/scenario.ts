@@ -13,7 +13,9 @@ export const ScenarioEditSchema = ScenarioCreateSchema
 /** PATCH /api/scenarios/:scenarioId → ScenarioDetail: tags alone make no revision. */
 export const ScenarioTagsSchema = z.strictObject({ tags: z.array(TagSchema).max(20) })
 /** POST /api/scenarios/:scenarioId/duplicate → ScenarioDetail (201) */
-export const ScenarioDuplicateSchema = z.strictObject({ title: z.string().max(200).optional() })
+export const ScenarioDuplicateSchema = z.strictObject({
+  title: z.string().transform(neutraliseText).pipe(z.string().min(1, 'A scenario needs a title.').max(200, 'At most 200 characters.')).optional(),
+})
 /** GET /api/benches/:benchId/scenarios?search=&tag=&sort=updated|title|created&order=asc|desc&bin=0|1&cursor=&limit= → Page<ScenarioRow> */
 export const ScenarioListSchema = z.strictObject({
   search: z.string().max(200).default(''), tag: z.string().max(40).default(''),

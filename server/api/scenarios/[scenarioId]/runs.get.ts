@@ -1,0 +1,8 @@
+/** GET /api/scenarios/:scenarioId/runs - newest first. */
+import { RunListSchema } from '#shared/schemas/api/run'
+import { listRuns } from '../../../services/run-rows'
+
+export default defineEventHandler(async (event) => {
+  const member = await requireMember(event, 'run.read')
+  return listRuns(useDatabase(), member, readQuery(event, RunListSchema), member.itemId)
+})
