@@ -2,13 +2,15 @@
 import { closedForm } from '#shared/kinetics/closed-form'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
-import { buildOutcome } from '#shared/walk/outcome'
 import { previewRefusal } from '#shared/walk/cost'
+import type { RunResult } from '~~/workers/protocol'
 import { closedFormSeries, walkSeries } from '~/utils/expectedCurves'
 
 export type PreviewState = 'walking' | 'drawn' | 'too-large' | 'failed'
 /** Enough for a mean to about ±0.01 of the sites, few enough to follow the typing. */
 export const PREVIEW_REPLICATES = 60
+/** A preview that would take longer than this is not walked [s]. */
+const MOST_SECONDS = 4
 /** Typing pauses shorter than this do not start a walk [ms]. */
 const SETTLE_MS = 25
 
@@ -24,7 +26,7 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
   let asked = 0
   async function walk(one: Scenario) {
     const mine = ++asked
-    const refusal = previewRefusal(one)
+    const refusal = previewRefusal(one, MOST_SECONDS, crew.pace)
     if (refusal) {
       preview.value = null
       previewState.value = 'too-large'
@@ -33,11 +35,16 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
     }
     previewState.value = 'walking'
     try {
-      const result = await crew.preview(one, PREVIEW_REPLICATES)
-      if (mine !== asked || !result) return
-      preview.value = buildOutcome({ scenario: one, ...result })
-      previewState.value = 'drawn'
-      performance.mark('moorage:preview-drawn')
+      let drawn = 0
+      const draw = async (result: RunResult) => {
+        const outcome = await crew.conclude(one, result)
+        if (mine !== asked || outcome.replicates <= drawn) return
+        drawn = outcome.replicates
+        preview.value = outcome
+        if (drawn >= PREVIEW_REPLICATES) previewState.value = 'drawn'
+      }
+      const result = await crew.preview(one, PREVIEW_REPLICATES, growing => void draw(growing))
+      if (result) await draw(result)
     } catch {
       if (mine === asked) previewState.value = 'failed'
     }

@@ -5,12 +5,14 @@ import { formatTime } from '#shared/units'
 import type { RunSettings } from '~/utils/runSettings'
 
 export function useRunCost(scenario: Readonly<Ref<Scenario>>, run: Readonly<Ref<RunSettings>>) {
-  const cost = computed(() => estimateCost(scenario.value, run.value.replicates, run.value.algorithm))
-  const refusals = computed(() => cost.value.refusals)
+  const crew = useCrew()
+  const cost = computed(() => estimateCost(scenario.value, run.value.replicates, run.value.algorithm, crew.pace))
+  const refusals = computed(() => cost.value.refusals.map(one => ({ path: one.path, message: `${one.message} ${one.suggestion}`.trim() })))
   const sentence = computed(() => {
     if (refusals.value.length > 0) return ''
-    const saved = cost.value.savedRefusal ? ` ${cost.value.savedRefusal}` : ''
-    return `About ${formatTime(Math.max(0.1, cost.value.seconds), { significant: 2 })} on this machine by the “${cost.value.algorithm}” walk.${saved}`
+    const { seconds, algorithm, unsavable } = cost.value
+    const long = seconds < 0.1 ? 'Less than 0.1 s' : `About ${formatTime(seconds, { significant: 2 })}`
+    return `${long} on this machine by the “${algorithm}” walk.${unsavable ? ` ${unsavable}` : ''}`
   })
   return { cost, refusals, sentence }
 }
