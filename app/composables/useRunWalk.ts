@@ -1,6 +1,5 @@
 /** Drives one run through the crew: progress, Monte Carlo error, partial outcomes at intervals, the finished one. */
 import { frameOf } from '#shared/walk/frame'
-import { blockRanges } from '#shared/walk/merge'
 import { estimateCost } from '#shared/walk/cost'
 import { RatioPrecision } from '#shared/walk/tallies'
 import type { EngineId, ReplicateBlock } from '#shared/walk/types'
@@ -20,50 +19,61 @@ function rowsFrom(block: ReplicateBlock, from: number): ReplicateBlock {
 
 /** The books of one run while it is walked: whole blocks go to the desk, the one under way is only looked at. */
 class WalkBooks {
-  /** Whole blocks and, at the end, a last one that may be cut short. */
   blocks: ReplicateBlock[] = []
-  tail: ReplicateBlock | undefined
+  private tail: ReplicateBlock | undefined
   private readonly precision: RatioPrecision
-  private readonly ends: Set<number>
   private read = 0
   private pending: Promise<unknown> = Promise.resolve()
 
   constructor(private readonly run: LocalRun, private readonly desk: Desk) {
-    const { asked } = run
-    this.precision = new RatioPrecision(frameOf(asked.scenario))
-    this.ends = new Set((asked.ranges ?? blockRanges(asked.replicates)).map(range => range.to))
+    this.precision = new RatioPrecision(frameOf(run.asked.scenario))
   }
 
-  /** Takes what there is; a cut last block is entered only at the end. */
-  take(all: readonly ReplicateBlock[], atEnd: boolean): void {
-    const entered = atEnd ? [...all] : all.filter(block => this.ends.has(block.to))
+  /** Takes what there is so far. All blocks but the last are whole; the last may be cut short. */
+  take(all: readonly ReplicateBlock[]): void {
+    const entered = all.slice(0, -1)
     const fresh = entered.slice(this.blocks.length)
     this.blocks = entered
-    this.tail = all.length > entered.length ? all.at(-1) : undefined
+    this.tail = all.at(-1)
     if (fresh.length > 0) this.pending = this.pending.then(() => this.desk.add(this.run.localId, fresh))
     this.measure(all)
   }
 
+  /** The final blocks: a run with a target groups them anew, so the desk's books are opened again. */
+  conclude(blocks: ReplicateBlock[]): void {
+    const { localId, asked } = this.run
+    this.blocks = blocks
+    this.tail = undefined
+    this.pending = this.pending.then(() => this.desk.open(localId, asked.scenario, asked.seed)).then(() => this.desk.add(localId, blocks))
+    this.measure(blocks)
+  }
+
+  /** After a fault: what there was counts. */
+  keepTail(): void {
+    this.conclude(this.tail ? [...this.blocks, this.tail] : this.blocks)
+  }
+
   private measure(all: readonly ReplicateBlock[]): void {
     const end = all.at(-1)?.to ?? 0
-    if (end === this.read) return
+    if (end <= this.read) return
     for (const block of all) if (block.to > this.read) this.precision.add(rowsFrom(block, Math.max(block.from, this.read)))
     this.read = end
     const found = this.precision.read()
     if (found) this.run.precision = [...this.run.precision, { replicates: found.replicates, standardError: found.standardError }]
   }
 
-  async outcome(engine: EngineId, partial: boolean, landingError: number, withTail: boolean) {
+  async outcome(engine: EngineId, partial: boolean, landingError: number) {
     await this.pending
-    return this.desk.outcome(this.run.localId, { engine, partial, landingError }, withTail ? this.tail : undefined)
+    return this.desk.outcome(this.run.localId, { engine, partial, landingError }, this.tail)
   }
 }
 
 export function useRunWalk() {
   const crew = useCrew()
 
-  async function walk(run: LocalRun, signal: AbortSignal): Promise<ReplicateBlock[]> {
+  async function walk(run: LocalRun, signal: AbortSignal, stop: () => void): Promise<ReplicateBlock[]> {
     const { asked } = run
+    const limitMs = (asked.timeLimitS ?? Infinity) * 1000
     const desk = await useOutcomeDesk()
     await desk.open(run.localId, asked.scenario, asked.seed)
     const books = new WalkBooks(run, desk)
@@ -76,7 +86,7 @@ export function useRunWalk() {
       idle = false
       const startedAt = performance.now()
       try {
-        const outcome = await books.outcome(engine, true, 0, true)
+        const outcome = await books.outcome(engine, true, 0)
         if (run.state === 'running') run.outcome = outcome
       } finally {
         const now = performance.now()
@@ -86,8 +96,9 @@ export function useRunWalk() {
     }
     function onProgress(progress: RunProgress) {
       Object.assign(run, { replicatesDone: progress.replicatesDone, elapsedMs: progress.elapsedMs, remainingMs: progress.remainingMs, workers: progress.workers })
-      books.take(progress.blocks, false)
+      books.take(progress.blocks)
       if (progress.blocks.length > 0 && idle && performance.now() > nextAt) void partial()
+      if (progress.elapsedMs > limitMs) stop()
     }
 
     let result: RunResult | undefined
@@ -97,8 +108,9 @@ export function useRunWalk() {
         ...(asked.ranges && { ranges: asked.ranges }),
         ...(asked.targetStandardError !== undefined && { targetStandardError: asked.targetStandardError }),
       }, { onProgress, signal })
-      books.take(result.blocks, true)
+      books.conclude(result.blocks)
     } catch (thrown) {
+      books.keepTail()
       const kept = books.blocks.length > 0 ? 'The replicates before it are kept as a partial outcome.' : 'Nothing was kept.'
       run.problem = `The walk broke off: ${thrown instanceof Error ? thrown.message : String(thrown)} ${kept}`
     }
@@ -113,7 +125,7 @@ export function useRunWalk() {
     run.workers = result?.workers ?? run.workers
     const partial = result?.partial ?? true
     if (books.blocks.length > 0) {
-      run.outcome = await books.outcome(run.engine!, partial, run.landingError, false)
+      run.outcome = await books.outcome(run.engine!, partial, run.landingError)
       run.replicatesDone = run.outcome.replicates
     } else {
       run.outcome = null

@@ -56,10 +56,12 @@ export const useRunsStore = defineStore('runs', () => {
   async function go(run: LocalRun) {
     const controller = new AbortController()
     stops.set(run.localId, controller)
-    const timer = run.asked.timeLimitS ? setTimeout(() => controller.abort(), run.asked.timeLimitS * 1000) : undefined
+    // Queued behind another run, its time begins with its first progress.
+    const alone = running.value.length === 1
+    const timer = run.asked.timeLimitS && alone ? setTimeout(() => controller.abort(), run.asked.timeLimitS * 1000) : undefined
     try {
       walking ??= useRunWalk()
-      const blocks = await walking.walk(run, controller.signal)
+      const blocks = await walking.walk(run, controller.signal, () => controller.abort())
       if (run.outcome && run.asked.purpose === 'run') await finished(run, blocks)
       else await close(run.localId)
     } catch (thrown) {

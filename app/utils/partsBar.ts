@@ -9,6 +9,23 @@ export interface PartsOfClass {
   failedHitsS: number
   depletion: { valueS: number, lowS: number | null, highS: number | null }
 }
+/** The part of an outcome that the bars read; a preview's outcome will do. */
+export interface PartsSource {
+  readonly classes: readonly {
+    readonly name: string
+    readonly sites: number
+    readonly tau: { readonly valueS: number | null }
+    readonly decomposition: { readonly collisionS: number | null, readonly failedHitsS: number | null, readonly depletionS: { readonly value: number | null, readonly low: number | null, readonly high: number | null } }
+  }[]
+}
+/** Kinds of site whose three parts are all known. */
+export function partsOfOutcome(outcome: PartsSource): PartsOfClass[] {
+  return outcome.classes.flatMap(({ name, sites, tau, decomposition }) => {
+    const { collisionS, failedHitsS, depletionS } = decomposition
+    if (sites === 0 || tau.valueS === null || collisionS === null || failedHitsS === null || depletionS.value === null) return []
+    return [{ name: `${name[0]!.toUpperCase()}${name.slice(1)} sites`, tauS: tau.valueS, collisionS, failedHitsS, depletion: { valueS: depletionS.value, lowS: depletionS.low, highS: depletionS.high } }]
+  })
+}
 export interface DrawnPart { key: string, name: string, depth: 1 | 3 | 5, left: number, width: number, value: string, percent: string }
 export interface DrawnClass { name: string, tau: string, top: number, parts: DrawnPart[] }
 export interface PartsLayout { width: number, height: number, narrow: boolean, classes: DrawnClass[] }
