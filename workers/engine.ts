@@ -5,6 +5,8 @@ import { KERNEL_VERSION } from './kernel/version'
 import { PlacedPlans } from './placing'
 import type { Kernel, PreparedWalk } from './protocol'
 import { runnerOf } from './tally'
+import { prepareTouch } from './touch'
+import { TouchTables } from './touch-tables'
 
 /** A walk without tables: exact, nothing to hand over. */
 function prepareTableless(host: KernelHost, plans: PlacedPlans, plan: WalkPlan, algorithm: 'stirred' | 'step'): PreparedWalk {
@@ -33,12 +35,14 @@ function refuseMismatch(plan: WalkPlan, algorithm: Algorithm): void {
 export async function createKernel(wasm: WebAssembly.Module | BufferSource): Promise<Kernel> {
   const module = wasm instanceof WebAssembly.Module ? wasm : await WebAssembly.compile(wasm)
   const host = new KernelHost(await WebAssembly.instantiate(module, {}))
-  const plans = new PlacedPlans(host)
+  const plans = new PlacedPlans(host), pointerOf = (plan: WalkPlan) => plans.pointerOf(plan)
+  const touchTables = new TouchTables(host, pointerOf)
   return {
     version: KERNEL_VERSION,
     prepare(plan, algorithm) {
       refuseMismatch(plan, algorithm)
       if (algorithm === 'stirred' || algorithm === 'step') return prepareTableless(host, plans, plan, algorithm)
+      if (algorithm === 'touch') return prepareTouch(host, plan, touchTables, pointerOf)
       throw new RangeError(`The kernel has no algorithm ${algorithm}.`)
     },
   }

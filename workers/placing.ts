@@ -69,7 +69,8 @@ function wholeNumbersOf(plan: WalkPlan, faces: number): number[] {
   ]
 }
 
-function placeTable(host: KernelHost, table: CountTable | null | undefined): number {
+/** Writes a table of counts; 0 where there is none. */
+export function placeTable(host: KernelHost, table: CountTable | null | undefined): number {
   if (!table) return 0
   const words = new Uint32Array(2 + 256 + table.thresholds.length)
   words.set([table.first, table.thresholds.length - 1])

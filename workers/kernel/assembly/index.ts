@@ -2,8 +2,11 @@
 import { planBytes } from './plan'
 import { walkStep } from './step'
 import { walkStirred } from './stirred'
+import { walkTouch } from './touch'
+import { fillAlias, sumOfTable } from './touch-alias'
+import { solveFirstTouch } from './touch-table'
 
-export { planBytes, walkStep, walkStirred }
+export { fillAlias, planBytes, solveFirstTouch, sumOfTable, walkStep, walkStirred, walkTouch }
 
 /** Memory for the host, 16-byte aligned. */
 export function allocate(bytes: usize): usize {
