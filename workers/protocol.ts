@@ -1,5 +1,7 @@
 /** What the page, the crew, a worker and the kernel say to each other. Types only. */
+import type { Outcome } from '../shared/schemas/outcome'
 import type { Scenario } from '../shared/schemas/scenario'
+import type { ReplicateRange } from '../shared/walk/merge'
 import type { Algorithm, AskedAlgorithm, EngineId, ReplicateBlock, WalkPlan } from '../shared/walk/types'
 
 /** One instance of the kernel (a WASM memory). Deterministic: equal plan, algorithm, seed words and range give equal blocks anywhere. */
@@ -28,11 +30,25 @@ export interface RunOrder {
   algorithm: AskedAlgorithm
   /** Stop as soon as the ratio's standard error is at most this (judged at block ends, contiguous prefix); replicates is then the cap. */
   targetStandardError?: number
+  /** Walk exactly these blocks, in order from replicate 0 on (to repeat a partial outcome); otherwise the blocks of `replicates`. */
+  ranges?: ReplicateRange[]
 }
+
+/** What a worker offers, through comlink. One job is prepared at a time; earlier ones are kept while there is room. */
+export interface Walker {
+  prepare(job: WalkJob, tables?: ArrayBuffer | null): Promise<WalkReady>
+  /** Tables of the prepared job in transferable form; null when handing over is not worthwhile. */
+  exportTables(): ArrayBuffer | null
+  walk(from: number, to: number): ReplicateBlock
+  /** Makes the outcome document away from the page's own thread. */
+  conclude(scenario: Scenario, result: RunResult): Outcome
+}
+export interface WalkJob { scenario: Scenario, algorithm: Algorithm, seed: string }
+export interface WalkReady { version: string, tableBytes: number, landingError: number, prepareMs: number }
 export interface RunProgress {
   replicatesDone: number
   replicates: number
-  /** Contiguous finished blocks from replicate 0 on. */
+  /** Contiguous replicates from 0 on; the last block may be cut short. */
   blocks: ReplicateBlock[]
   elapsedMs: number
   remainingMs: number | null
@@ -53,8 +69,12 @@ export interface RunResult {
 /** `crew.run(order, options)`: resolves with the finished or (after abort) partial result; rejects only on a fault. */
 export interface Crew {
   run(order: RunOrder, options?: { onProgress?: (progress: RunProgress) => void, signal?: AbortSignal }): Promise<RunResult>
-  /** A quick walk on a worker kept warm for it; a newer call supersedes an older one (which resolves null). Seed text `preview`. */
-  preview(scenario: Scenario, replicates: number): Promise<RunResult | null>
+  /** A quick walk on a worker kept warm for it; a newer call supersedes an older one (which resolves null). Seed text `preview`. `onGrowth` gets what there is after each chunk. */
+  preview(scenario: Scenario, replicates: number, onGrowth?: (result: RunResult) => void): Promise<RunResult | null>
+  /** The outcome document of a result, made in a worker. */
+  conclude(scenario: Scenario, result: RunResult): Promise<Outcome>
+  /** Measured over estimated time per replicate on this machine, for `estimateCost`; 1 before the first run. */
+  readonly pace: number
   /** Ends all workers. */
   dismiss(): void
   readonly size: number
