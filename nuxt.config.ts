@@ -3,20 +3,19 @@ import { fileURLToPath } from 'node:url'
 import { examinerBundle } from './server/jobs/bundle'
 
 export default defineNuxtConfig({
-  compatibilityDate: '2026-01-01',
-  telemetry: false,
-  devtools: { enabled: false },
-  auth: { loadStrategy: 'none' },
   modules: ['@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security', '@nuxt/eslint'],
-  css: ['~/assets/css/fonts.css'],
-  tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
   components: [{ path: '~/components', pathPrefix: false }],
+  devtools: { enabled: false },
   app: {
     head: {
       htmlAttrs: { lang: 'en' },
       title: 'Moorage',
       meta: [{ name: 'viewport', content: 'width=device-width, initial-scale=1' }],
     },
+  },
+  css: ['~/assets/css/fonts.css'],
+  vue: {
+    compilerOptions: { isCustomElement: tag => (tag.startsWith('Tres') && tag !== 'TresCanvas') || tag === 'primitive' },
   },
   runtimeConfig: {
     /** Application role's address, e.g. postgresql://moorage_app:…@127.0.0.1:5432/moorage (env NUXT_DATABASE_URL). */
@@ -41,15 +40,39 @@ export default defineNuxtConfig({
       demoAccounts: false,
     },
   },
+  routeRules: {
+    '/_nuxt/**': { headers: { 'cross-origin-embedder-policy': 'require-corp', 'cross-origin-resource-policy': 'same-origin' } },
+  },
+  experimental: { defaults: { nuxtLink: { prefetch: false } } },
+  compatibilityDate: '2026-01-01',
+  nitro: {
+    preset: 'node-server',
+    compressPublicAssets: { gzip: true, brotli: true },
+    esbuild: { options: { target: 'es2022' } },
+    rollupConfig: { plugins: [examinerBundle()], output: {} as never },
+  },
+  vite: {
+    worker: { format: 'es' },
+    build: { target: 'es2022' },
+  },
+  typescript: {
+    strict: true,
+    tsConfig: {
+      include: ['../workers/**/*.ts', '../tests/**/*.ts'],
+      exclude: ['../workers/kernel/assembly/**'],
+      compilerOptions: { noUncheckedIndexedAccess: true },
+    },
+    nodeTsConfig: { include: ['../scripts/**/*', '../*.config.ts'] },
+  },
+  telemetry: false,
   hooks: {
     // Ours comes first and answers /api; Nuxt's own goes on writing the error page.
     'nitro:config'(config) {
       config.errorHandler = [fileURLToPath(new URL('./server/error.ts', import.meta.url)), ...[config.errorHandler ?? []].flat()]
     },
   },
-  routeRules: {
-    '/_nuxt/**': { headers: { 'cross-origin-embedder-policy': 'require-corp', 'cross-origin-resource-policy': 'same-origin' } },
-  },
+  auth: { loadStrategy: 'none' },
+  eslint: { config: { stylistic: { braceStyle: '1tbs' } } },
   security: {
     nonce: true,
     rateLimiter: false,
@@ -74,28 +97,5 @@ export default defineNuxtConfig({
       },
     },
   },
-  nitro: {
-    preset: 'node-server',
-    compressPublicAssets: { gzip: true, brotli: true },
-    esbuild: { options: { target: 'es2022' } },
-    rollupConfig: { plugins: [examinerBundle()], output: {} as never },
-  },
-  experimental: { defaults: { nuxtLink: { prefetch: false } } },
-  vite: {
-    worker: { format: 'es' },
-    build: { target: 'es2022' },
-  },
-  vue: {
-    compilerOptions: { isCustomElement: tag => (tag.startsWith('Tres') && tag !== 'TresCanvas') || tag === 'primitive' },
-  },
-  typescript: {
-    strict: true,
-    tsConfig: {
-      include: ['../workers/**/*.ts', '../tests/**/*.ts'],
-      exclude: ['../workers/kernel/assembly/**'],
-      compilerOptions: { noUncheckedIndexedAccess: true },
-    },
-    nodeTsConfig: { include: ['../scripts/**/*', '../*.config.ts'] },
-  },
-  eslint: { config: { stylistic: { braceStyle: '1tbs' } } },
+  tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
 })

@@ -48,4 +48,3 @@ export async function migrateDatabase(options: MigrateOptions): Promise<number> 
     await client.end()
   }
 }
-

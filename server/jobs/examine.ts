@@ -3,6 +3,7 @@ import { RunSaveSchema, SAVED_REPLICATES_LIMIT, type RunSave } from '../../share
 import type { Outcome } from '../../shared/schemas/outcome'
 import { fieldProblems, type FieldProblem } from '../../shared/schemas/problem'
 import type { Scenario } from '../../shared/schemas/scenario'
+import { estimateCost } from '../../shared/walk/cost'
 import { blockDigest } from '../../shared/walk/digest'
 import { frameOf } from '../../shared/walk/frame'
 import { buildOutcome } from '../../shared/walk/outcome'
@@ -28,12 +29,13 @@ export function parseRun(raw: Uint8Array): RunSave {
   return judged.data!
 }
 
-/** Which algorithms walk a scenario's law. */
-function checkAlgorithm(scenario: Scenario, run: RunSave) {
+/** A walk that nobody may start cannot be saved either: joint limits, and the algorithm must walk this scenario's law. */
+function checkWalk(scenario: Scenario, run: RunSave) {
   const { algorithm } = run.engine
   const stirred = scenario.reservoir.supply === 'stirred'
   if (stirred !== (algorithm === 'stirred')) throw badField('engine.algorithm', `A ${scenario.reservoir.supply} supply is not walked by “${algorithm}”.`)
-  if (scenario.medium.crowding === 'exclusive' && algorithm !== 'step' && !stirred) throw badField('engine.algorithm', 'Mutual exclusion is walked step by step.')
+  const { refusals } = estimateCost(scenario, run.replicatesAsked, algorithm === 'stirred' ? 'auto' : algorithm)
+  refuseAll(refusals.map(({ path, message }) => ({ path: path === 'algorithm' ? 'engine.algorithm' : path === 'replicates' ? 'replicatesAsked' : `scenario.${path}`, message })))
 }
 
 /**
@@ -41,7 +43,7 @@ function checkAlgorithm(scenario: Scenario, run: RunSave) {
  * @param landingError - of the engine's tables for this scenario, asked only once the blocks have passed, never taken from the body [1]
  */
 export async function examineRun(scenario: Scenario, run: RunSave, landingError: () => Promise<number>): Promise<Outcome> {
-  checkAlgorithm(scenario, run)
+  checkWalk(scenario, run)
   const frame = frameOf(scenario)
   refuseAll(checkBlocks(frame, run))
   const replicates = run.blocks.at(-1)!.to

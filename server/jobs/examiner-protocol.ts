@@ -6,11 +6,11 @@ import type { Scenario } from '../../shared/schemas/scenario'
 import type { Algorithm } from '../../shared/walk/types'
 import type { RefusalParts } from '../utils/problem'
 
-export type ExaminerJob =
-  | { kind: 'parse', raw: Uint8Array }
-  | { kind: 'examine', scenario: Scenario }
-  | { kind: 'prepare', scenario: Scenario, algorithm: Algorithm, seed: string }
-  | { kind: 'walk', from: number, to: number }
+export type ExaminerJob
+  = | { kind: 'parse', raw: Uint8Array }
+    | { kind: 'examine', scenario: Scenario }
+    | { kind: 'prepare', scenario: Scenario, algorithm: Algorithm, seed: string }
+    | { kind: 'walk', from: number, to: number }
 export interface ExaminerValues {
   parse: { revision: number }
   examine: { run: RunSave, outcome: Outcome }

@@ -11,8 +11,10 @@ const MOST = 10
 async function newestScenarios(db: Handle, benchId: string): Promise<BenchHome['scenarios']> {
   const newest = await db.select({ scenarioId: scenarios.scenarioId, title: scenarios.title, revision: scenarios.revision, updatedAt: scenarios.updatedAt })
     .from(scenarios).where(and(eq(scenarios.benchId, benchId), isNull(scenarios.deletedAt))).orderBy(desc(scenarios.updatedAt), desc(scenarios.scenarioId)).limit(MOST)
-  const last = newest.length === 0 ? [] : await db.selectDistinctOn([runs.scenarioId], { scenarioId: runs.scenarioId, runId: runs.runId, number: runs.number, savedAt: runs.savedAt, summary: runs.summary })
-    .from(runs).where(and(inArray(runs.scenarioId, newest.map(one => one.scenarioId)), isNull(runs.deletedAt))).orderBy(runs.scenarioId, desc(runs.number))
+  const last = newest.length === 0
+    ? []
+    : await db.selectDistinctOn([runs.scenarioId], { scenarioId: runs.scenarioId, runId: runs.runId, number: runs.number, savedAt: runs.savedAt, summary: runs.summary })
+        .from(runs).where(and(inArray(runs.scenarioId, newest.map(one => one.scenarioId)), isNull(runs.deletedAt))).orderBy(runs.scenarioId, desc(runs.number))
   const byScenario = new Map(last.map(run => [run.scenarioId, run]))
   return newest.map(({ updatedAt, ...one }) => {
     const run = byScenario.get(one.scenarioId)

@@ -20,10 +20,10 @@ export async function startSession(db: Handle, userId: string, agent: string): P
   return key
 }
 
-export interface Person { userId: string, sessionId: string, name: string, mail: string }
+export interface Person { userId: string, sessionId: string, name: string, mail: string, demo: boolean }
 
 export async function findSession(db: Handle, key: string): Promise<Person | undefined> {
-  const [found] = await db.select({ userId: users.userId, sessionId: sessions.sessionId, name: users.name, mail: users.mail, stale: sql<boolean>`${sessions.lastSeenAt} < now() - ${SEEN_EVERY}` })
+  const [found] = await db.select({ userId: users.userId, sessionId: sessions.sessionId, name: users.name, mail: users.mail, demo: users.demo, stale: sql<boolean>`${sessions.lastSeenAt} < now() - ${SEEN_EVERY}` })
     .from(sessions).innerJoin(users, eq(users.userId, sessions.userId))
     .where(and(eq(sessions.keyHash, hashOf(key)), gt(sessions.expiresAt, sql`now()`)))
   if (!found) return undefined

@@ -6,7 +6,7 @@ import type { Me } from '../../shared/schemas/api/account'
 import { problem } from '../utils/problem'
 import { recordEvent } from './audit-trail'
 
-export interface NewUser { mail: string, name: string, passHash: string, createdAt?: Date }
+export interface NewUser { mail: string, name: string, passHash: string, createdAt?: Date, demo?: boolean }
 
 export async function findUserByMail(db: Handle, mail: string) {
   const [found] = await db.select().from(users).where(eq(users.mail, mail))

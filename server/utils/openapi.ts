@@ -38,13 +38,13 @@ const answerSchema = (answer: string) =>
 
 function operationOf(route: RouteRow) {
   return {
-    summary: route.summary,
-    operationId: `${route.method.toLowerCase()}${route.path.replace('/api', '').replace(/[^A-Za-z]+(\w)/g, (_, letter: string) => letter.toUpperCase())}`,
+    'summary': route.summary,
+    'operationId': `${route.method.toLowerCase()}${route.path.replace('/api', '').replace(/[^A-Za-z]+(\w)/g, (_, letter: string) => letter.toUpperCase())}`,
     'x-moorage-access': route.access,
     ...(route.access === 'public' ? { security: [] } : {}),
-    parameters: parametersOf(route),
+    'parameters': parametersOf(route),
     ...(route.body && { requestBody: { required: true, content: { 'application/json': { schema: withoutDialect(jsonSchema(route.body)) } } } }),
-    responses: {
+    'responses': {
       [route.status]: { description: route.answer ?? 'Done.', ...(route.answer && { content: { 'application/json': { schema: answerSchema(route.answer) } } }) },
       default: { $ref: '#/components/responses/Problem' },
     },

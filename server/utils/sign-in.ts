@@ -19,7 +19,7 @@ export async function checkSignIn(event: H3Event, mail: string, passPhrase: stri
   await slowDown(event, mail)
   const user = await findUserByMail(db, mail)
   const right = await verifyPassword(user?.passHash ?? await hashOfNobody(), passPhrase)
-  if (!user || !right) {
+  if (!user || !right || !mayComeIn(event, user)) {
     await noteFailedSignIn(db, mail)
     throw problem('wrong_sign_in')
   }

@@ -10,7 +10,7 @@ import { users } from './users'
 export const CHANGE_KINDS = ['scenario-created', 'revision-saved', 'scenario-binned', 'scenario-restored', 'run-saved', 'run-binned'] as const
 export type AuditKind = typeof CHANGE_KINDS[number]
   | 'run-restored' | 'bench-created' | 'bench-renamed' | 'role-changed' | 'member-removed'
-  | 'account-registered' | 'signed-in' | 'signed-out' | 'signed-out-everywhere' | 'run-audited' | 'run-refused'
+  | 'account-registered' | 'signed-in' | 'signed-out' | 'signed-out-everywhere' | 'run-audited' | 'run-refused' | 'demo-seeded'
 
 export const auditEvents = pgTable('audit_events', {
   eventId: key('event_id'),

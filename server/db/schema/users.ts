@@ -1,6 +1,6 @@
 /** People: one row a mail address, kept in lower case. */
 import { sql } from 'drizzle-orm'
-import { check, integer, pgTable, text } from 'drizzle-orm/pg-core'
+import { boolean, check, integer, pgTable, text } from 'drizzle-orm/pg-core'
 import { key, moment, now } from './columns'
 
 export const users = pgTable('users', {
@@ -12,6 +12,8 @@ export const users = pgTable('users', {
   /** Wrong pass phrases since the last sign-in: the owner is told at the next one. */
   failedSignIns: integer('failed_sign_ins').notNull().default(0),
   lastFailedAt: moment('last_failed_at'),
+  /** An invented person with a published pass phrase: may sign in only where the server is told so, which is on loopback. */
+  demo: boolean('demo').notNull().default(false),
   createdAt: now('created_at'),
 }, table => [
   check('users_mail_lower', sql`${table.mail} = lower(${table.mail}) and char_length(${table.mail}) between 3 and 254`),
