@@ -2,6 +2,6 @@
 export default defineNuxtRouteMiddleware(async (to) => {
   const session = useSessionStore()
   if (!session.known) await session.load()
-  const closed = to.matched.length > 0 && !to.meta.open
-  if (closed && session.known && !session.me) return navigateTo({ path: '/sign-in', query: { to: to.fullPath } })
+  const away = to.matched.length > 0 && !to.meta.open ? turnAway(to, session) : undefined
+  if (away) return navigateTo(away)
 })
