@@ -1,5 +1,5 @@
 /** Cautions against published ranges for the scenario under the pen, by field. */
-import { cautionsFor } from '#shared/almanac/ranges'
+import { cautionsFor } from '#shared/almanac/cautions'
 import type { Scenario } from '#shared/schemas/scenario'
 
 /** The key '' holds what concerns the scenario as a whole. */

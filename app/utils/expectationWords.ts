@@ -3,9 +3,8 @@ import type { ClosedForm } from '#shared/kinetics/closed-form'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
 import { formatInterval, formatTime } from '#shared/units'
+import type { SentencePart } from './sentenceParts'
 
-/** A part of a sentence; `strong` parts are set in 600, `quiet` ones in the second ink. */
-export interface SentencePart { text: string, strong?: boolean, quiet?: boolean }
 
 const tauWords = (tauS: number | null) => tauS === null ? 'never' : formatTime(tauS)
 const CHANGED_FROM = 0.005
