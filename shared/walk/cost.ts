@@ -6,7 +6,7 @@ import { siteTotal } from '../kinetics/closed-form'
 import { hitRates } from '../kinetics/rates'
 import { blockRanges } from './merge'
 import { megabytes, routeAlgorithm, TABLE_LIMIT_BYTES } from './route'
-import { attemptTableBytes, latticeSize, touchTableBytes, type LatticeSize } from './table-size'
+import { latticeSize, type LatticeSize } from './table-size'
 import type { Algorithm, AskedAlgorithm } from './types'
 
 export const VOXEL_STEPS_LIMIT = 1e11
@@ -16,7 +16,7 @@ export { SAVED_REPLICATES_LIMIT, TABLE_LIMIT_BYTES }
 /** Seconds per unit of work, one worker, WASM, measured on two 2-core machines; the run's own pace refines the estimate. */
 const SECONDS_PER = {
   vesicleStep: 3e-9, exclusiveVesicleStep: 5.8e-9, attempt: 3.5e-8, touchedStep: 2.8e-9,
-  solvedVoxelStep: 5e-10, landingVoxelStep: 2.6e-10, replicate: 2e-5, stirredSiteStep: 2.6e-9,
+  solvedVoxelStep: 5e-10, landingByte: 4e-8, replicate: 2e-5, stirredSiteStep: 2.6e-9,
 } as const
 /** Share of the vesicles in the box that have touched a site and must be followed, on average over a long run. */
 const TOUCHED = { held: 0.1, sealed: 0.5 } as const
@@ -53,9 +53,9 @@ export interface CostEstimate {
  */
 export function estimateCost(scenario: Scenario, replicates: number, asked: AskedAlgorithm = 'auto', pace = 1): CostEstimate {
   const size = latticeSize(scenario)
-  const route = routeAlgorithm(scenario, asked)
+  const route = routeAlgorithm(scenario, asked, size)
   const { algorithm } = route
-  const tableBytes = size.latticeBytes + tablesOf(algorithm, scenario, size)
+  const tableBytes = size.latticeBytes + tablesOf(algorithm, size)
   const setupSeconds = pace * setupOf(algorithm, size), secondsPerReplicate = pace * replicateOf(algorithm, scenario, size)
   const savedBytes = savedBytesOf(scenario, replicates, size)
   const refusals = [
@@ -69,15 +69,14 @@ export function estimateCost(scenario: Scenario, replicates: number, asked: Aske
   }
 }
 
-function tablesOf(algorithm: Algorithm | null, scenario: Scenario, size: LatticeSize): number {
-  if (algorithm === 'attempt') return attemptTableBytes(scenario, size)
-  return algorithm === 'touch' ? touchTableBytes(scenario, size) : 0
+function tablesOf(algorithm: Algorithm | null, size: LatticeSize): number {
+  if (algorithm === 'attempt') return size.attemptBytes
+  return algorithm === 'touch' ? size.touchBytes : 0
 }
 
-function setupOf(algorithm: Algorithm | null, { voxels, steps, settlingSteps, startClasses }: LatticeSize): number {
-  if (algorithm === 'touch') return voxels * steps * SECONDS_PER.solvedVoxelStep
-  if (algorithm !== 'attempt') return 0
-  return voxels * settlingSteps * SECONDS_PER.solvedVoxelStep + startClasses * Math.min(256, steps) * Math.min(voxels, 40_000) * SECONDS_PER.landingVoxelStep
+function setupOf(algorithm: Algorithm | null, size: LatticeSize): number {
+  if (algorithm === 'touch') return size.touchSolve * SECONDS_PER.solvedVoxelStep
+  return algorithm === 'attempt' ? size.attemptSolve * SECONDS_PER.solvedVoxelStep + size.attemptBytes * SECONDS_PER.landingByte : 0
 }
 
 function replicateOf(algorithm: Algorithm | null, scenario: Scenario, { sites, freeVoxels, steps }: LatticeSize): number {

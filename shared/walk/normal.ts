@@ -1,25 +1,12 @@
 /** Tails of the normal law and quantiles of Student's, for intervals and tests. */
+import { erfc } from '../kinetics/special'
 
 /**
- * Two-sided tail of the standard normal law, P(|Z| ≥ |z|) = erfc(|z|/√2), by the series of erf near 0 and Lentz's continued fraction beyond (Abramowitz & Stegun 7.1.6, 7.1.14).
+ * Two-sided tail of the standard normal law, P(|Z| ≥ |z|) = erfc(|z|/√2).
  * @param z - standard normal statistic [1]
- * @returns the probability, relative error below 1e-12; 0 beyond |z| ≈ 38 [1]
+ * @returns the probability; 0 beyond |z| ≈ 38 [1]
  */
-export function twoSidedTail(z: number): number {
-  const x = Math.abs(z) / Math.SQRT2
-  if (x < 2) {
-    let term = x, sum = x
-    for (let n = 1; Math.abs(term) > 1e-17 * sum; n++) {
-      term *= 2 * x * x / (2 * n + 1)
-      sum += term
-    }
-    return 1 - 2 / Math.sqrt(Math.PI) * Math.exp(-x * x) * sum
-  }
-  // erfc(x) = e^(−x²)/√π · 1/(x + (1/2)/(x + 1/(x + (3/2)/(x + …)))), from far enough out inwards.
-  let tail = 0
-  for (let k = 120; k > 0; k--) tail = k / 2 / (x + tail)
-  return Math.exp(-x * x) / Math.sqrt(Math.PI) / (x + tail)
-}
+export const twoSidedTail = (z: number): number => erfc(Math.abs(z) / Math.SQRT2)
 
 /**
  * Lower tail of the standard normal law.

@@ -1,11 +1,9 @@
 /** Which algorithm walks a scenario. All are exact or nearly so; they differ in what they can walk and in cost. */
 import type { Scenario } from '../schemas/scenario'
-import { attemptTableBytes, latticeSize, touchTableBytes } from './table-size'
+import { ATTEMPT_SITE_LIMIT, ATTEMPT_TABLE_LIMIT } from './attempt-size'
+import { latticeSize, type LatticeSize } from './table-size'
 import type { Algorithm, AskedAlgorithm } from './types'
 
-/** From here on `attempt` gives way to `touch`: its tables grow with the square of the sites. */
-export const ATTEMPT_SITES = 1000
-export const ATTEMPT_TABLE_BYTES = 32 * 2 ** 20
 /** No algorithm may hold larger tables, the lattice included. */
 export const TABLE_LIMIT_BYTES = 256 * 2 ** 20
 
@@ -20,20 +18,22 @@ export const megabytes = (bytes: number): string => `${Math.max(1, Math.round(by
  * Routes a scenario. A stirred supply has no lattice and one algorithm of its own, whatever was asked. Exclusion is walked step by step.
  * @param scenario - with defaults filled in
  * @param asked - `auto`, or an algorithm that a person wants
+ * @param size - the scenario's size where it is known already
  * @returns the algorithm, or a sentence that says why the asked one cannot walk this scenario
  */
-export function routeAlgorithm(scenario: Scenario, asked: AskedAlgorithm = 'auto'): Route {
+export function routeAlgorithm(scenario: Scenario, asked: AskedAlgorithm = 'auto', size?: LatticeSize): Route {
   if (scenario.reservoir.supply === 'stirred') return take('stirred')
   if (scenario.medium.crowding === 'exclusive')
     return asked === 'attempt' || asked === 'touch' ? refuse(`Exclusive crowding needs the step-by-step walk; “${asked}” samples independent vesicles.`) : take('step')
   if (asked === 'step') return take('step')
-  const size = latticeSize(scenario)
-  const attemptBytes = attemptTableBytes(scenario, size), touchBytes = touchTableBytes(scenario, size)
-  const attemptFits = size.sites <= ATTEMPT_SITES && attemptBytes <= ATTEMPT_TABLE_BYTES
-  const touchFits = touchBytes + size.latticeBytes <= TABLE_LIMIT_BYTES
-  if (asked === 'attempt')
-    return attemptFits ? take('attempt') : refuse(`“attempt” walks up to ${ATTEMPT_SITES} sites and ${megabytes(ATTEMPT_TABLE_BYTES)} of tables; this scenario has ${size.sites} sites and needs about ${megabytes(attemptBytes)}.`)
+  const { sites, attemptBytes, touchBytes, latticeBytes } = size ?? latticeSize(scenario)
+  const attemptFits = attemptBytes <= ATTEMPT_TABLE_LIMIT && attemptBytes + latticeBytes <= TABLE_LIMIT_BYTES
+  const touchFits = touchBytes + latticeBytes <= TABLE_LIMIT_BYTES
+  if (asked === 'attempt') {
+    const needs = Number.isFinite(attemptBytes) ? ` and needs about ${megabytes(attemptBytes)}` : ''
+    return attemptFits ? take('attempt') : refuse(`“attempt” walks up to ${ATTEMPT_SITE_LIMIT} sites and ${megabytes(ATTEMPT_TABLE_LIMIT)} of tables; this scenario has ${sites} sites${needs}.`)
+  }
   if (asked === 'touch')
-    return touchFits ? take('touch') : refuse(`“touch” holds up to ${megabytes(TABLE_LIMIT_BYTES)} of tables; this scenario needs about ${megabytes(touchBytes + size.latticeBytes)}. The step-by-step walk needs none.`)
+    return touchFits ? take('touch') : refuse(`“touch” holds up to ${megabytes(TABLE_LIMIT_BYTES)} of tables; this scenario needs about ${megabytes(touchBytes + latticeBytes)}. The step-by-step walk needs none.`)
   return take(attemptFits ? 'attempt' : touchFits ? 'touch' : 'step')
 }
