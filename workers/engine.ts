@@ -1,5 +1,6 @@
 /** The kernel behind the protocol: one WASM instance, one way to prepare each algorithm. */
 import type { Algorithm, WalkPlan } from '../shared/walk/types'
+import { AttemptEngine } from './attempt'
 import { KernelHost, type WalkCall } from './host'
 import { KERNEL_VERSION } from './kernel/version'
 import { PlacedPlans } from './placing'
@@ -36,6 +37,7 @@ export async function createKernel(wasm: WebAssembly.Module | BufferSource): Pro
   const module = wasm instanceof WebAssembly.Module ? wasm : await WebAssembly.compile(wasm)
   const host = new KernelHost(await WebAssembly.instantiate(module, {}))
   const plans = new PlacedPlans(host), pointerOf = (plan: WalkPlan) => plans.pointerOf(plan)
+  const attempt = new AttemptEngine(host, plans)
   const touchTables = new TouchTables(host, pointerOf)
   return {
     version: KERNEL_VERSION,
@@ -43,7 +45,7 @@ export async function createKernel(wasm: WebAssembly.Module | BufferSource): Pro
       refuseMismatch(plan, algorithm)
       if (algorithm === 'stirred' || algorithm === 'step') return prepareTableless(host, plans, plan, algorithm)
       if (algorithm === 'touch') return prepareTouch(host, plan, touchTables, pointerOf)
-      throw new RangeError(`The kernel has no algorithm ${algorithm}.`)
+      return attempt.prepare(plan)
     },
   }
 }

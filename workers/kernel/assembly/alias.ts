@@ -16,8 +16,8 @@ export function aliasRow(weights: usize, count: i32, total: f64, cells: usize, s
     const share = load<f64>(weights + (<usize>i << 3)) * scale
     store<f64>(weights + (<usize>i << 3), share)
     store<u32>(cells + (<usize>i << 2), 0xFFFF0000 | <u32>i)
-    if (share < 1) store<u32>(stack + (<usize>smallCount++ << 2), i)
-    else store<u32>(large + (<usize>largeCount++ << 2), i)
+    if (share < 1) store<u32>(stack + (<usize>(smallCount++) << 2), i)
+    else store<u32>(large + (<usize>(largeCount++) << 2), i)
   }
   while (smallCount > 0 && largeCount > 0) {
     const low = load<u32>(stack + (<usize>--smallCount << 2))
@@ -29,13 +29,12 @@ export function aliasRow(weights: usize, count: i32, total: f64, cells: usize, s
     store<f64>(weights + (<usize>high << 3), rest)
     if (rest < 1) {
       largeCount--
-      store<u32>(stack + (<usize>smallCount++ << 2), high)
+      store<u32>(stack + (<usize>(smallCount++) << 2), high)
     }
   }
 }
 
 /** The outcome that a draw picks from a row of `count` cells. */
-// @ts-ignore: decorator
 @inline
 export function pickFromRow(cells: usize, count: u32, draw: u32): u32 {
   const product = <u64>draw * <u64>count
@@ -49,15 +48,17 @@ export const DIGIT_CELLS: i32 = 256
 
 /*
  * k with P(k) ∝ x^k: its base-256 digits are independent, the lowest with weights x^d, the next with (x^256)^d, and so on.
- * Three digits reach 2^24; what lies beyond is folded into the top digit's last cell and is past every run's end.
+ * Three digits tell numbers below 255·65536 apart; what lies beyond is past the end of every run that is sampled here.
  */
-/** Fills rows of `digits` digits of a geometric law with ratio x; scratch holds 256 f64 and 512 u32. */
+/** Fills rows of `digits` digits of a geometric law with ratio below 1; scratch holds 256 f64 and 512 u32. */
 export function geometricRows(ratio: f64, digits: i32, cells: usize, scratch: usize): void {
   let x = ratio
   for (let digit = 0; digit < digits; digit++) {
     let weight: f64 = 1
     let total: f64 = 0
     for (let d = 0; d < DIGIT_CELLS; d++) {
+      // The top digit's last cell stands for all that is larger.
+      if (d == DIGIT_CELLS - 1 && digit == digits - 1) weight /= 1 - x
       store<f64>(scratch + (<usize>d << 3), weight)
       total += weight
       weight *= x

@@ -36,9 +36,6 @@ export class AttemptClass {
   /** Row over blocks of 256 pairs of steps. */
   tailBlocks: usize
   tailBlockCount: i32
-  /** f64 [site class]: chance that an effective attempt attaches, before decline. */
-  accept0: f64
-  accept1: f64
 }
 
 /** Written by the host word by word, in this order. */
@@ -55,7 +52,7 @@ export class Attempt {
   capacity: i32
   /** i32 [site] vesicle that sits there, or −1. */
   sitters: usize
-  /** u32 [vesicle class][site] chance to attach in units of 2^-32; all ones: always. */
+  /** f64 [vesicle class][site] chance that an effective attempt attaches, times 2^32. */
   accepts: usize
   /** f64 [steps] factor, f64 [steps + 1] sum of floor(65536·factor) before each step; 0 without decline. */
   factors: usize

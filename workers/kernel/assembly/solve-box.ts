@@ -56,7 +56,6 @@ export function narrowBox(box: Box, index: i32): void {
   box.fromZ = box.toZ = row / (box.ny + 2)
 }
 
-// @ts-ignore: decorator
 @inline
 function neighbours(at: usize, row: usize, slab: usize): v128 {
   return f32x4.add(
@@ -87,7 +86,6 @@ function sweep(box: Box): void {
   }
 }
 
-// @ts-ignore: decorator
 @inline
 function ghostX(kind: i32, wall: usize, centre: usize): f32 {
   return kind == FACE_OPEN ? 0 : load<f32>(kind == FACE_WALL ? wall : centre)

@@ -46,13 +46,11 @@ export class LandingSolve {
   lateMass: f64
 }
 
-// @ts-ignore: decorator
 @inline
 function waitAt(job: LandingSolve, step: i32): f64 {
   return <f64>load<f32>(job.waits + <usize>(step - 1) * job.waitStride)
 }
 
-// @ts-ignore: decorator
 @inline
 function rowOf(job: LandingSolve, step: i32): i32 {
   return (<i32>load<u8>(job.binOf + min(step, job.steps)) << 1) + (step & 1)

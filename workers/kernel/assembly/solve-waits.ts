@@ -38,7 +38,6 @@ export class WaitSolve {
   ratio: f64
 }
 
-// @ts-ignore: decorator
 @inline
 function waitAt(job: WaitSolve, step: i32, kind: i32): f64 {
   return <f64>load<f32>(job.waits + (<usize>((step - 1) * job.classCount + kind) << 2))

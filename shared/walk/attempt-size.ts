@@ -1,0 +1,107 @@
+/** What the attempt sampler's tables would cost, before anything is solved: for routing and for the cost shown to a person. */
+import type { WalkPlan } from './types'
+
+/** Tables above this are not made; the walk from first touches takes over [bytes]. */
+export const ATTEMPT_TABLE_LIMIT = 32 * 1024 * 1024
+/** Sites above this are not sampled from attempt to attempt [count]. */
+export const ATTEMPT_SITE_LIMIT = 1000
+/** Voxels around the ribbon that the landing law is solved in [count]. */
+export const NEAR_MARGIN = 12
+/** Steps of the landing law of a vesicle that moves in every step [1]. */
+export const LANDING_STEPS = 256
+/** Widths of landing bins grow by this ratio [1]. */
+export const BIN_RATIO = 1.19
+/** Longest explicit waiting time: outcomes are 16-bit [steps]. */
+export const WAIT_LIMIT = 65_000
+/** Longest run: base-256 digits of late times [steps]. */
+const STEP_LIMIT = 255 * 65536
+
+/**
+ * Steps of the landing law for a mobility: a slower vesicle spreads as far in more steps.
+ * @param mobility - chance of moving in a step [1]
+ * @returns steps [1]
+ */
+export function landingSteps(mobility: number): number {
+  return Math.min(4096, Math.round(LANDING_STEPS / mobility))
+}
+
+/**
+ * Upper ends of the landing bins: one step each at first, then growing by a fixed ratio.
+ * @param last - end of the last bin [steps]
+ * @returns ends, ascending [steps]
+ */
+export function landingBins(last: number): number[] {
+  const ends: number[] = []
+  for (let end = 1; ; end = Math.min(last, Math.max(end + 1, end * BIN_RATIO))) {
+    ends.push(Math.floor(end))
+    if (end >= last) return ends
+  }
+}
+
+/** s_max of a plan's mobility class: the largest attachment probability of its vesicles, up to 1, 1/2, 1/4, …, so that tables survive edits; 0 where none attaches. */
+export function attemptCeiling(plan: WalkPlan, mobility: number): number {
+  let largest = 0
+  plan.vesicles.forEach((vesicle, i) => {
+    if (vesicle.mobilityFactor === mobility) for (const row of plan.attachProbability) largest = Math.max(largest, row[i]!)
+  })
+  let ceiling = 1
+  while (ceiling / 2 >= largest && ceiling > 1 / 4096) ceiling /= 2
+  return largest > 0 ? ceiling : 0
+}
+
+/** Different mobilities above 0 whose vesicles can attach somewhere. */
+export function attemptMobilities(plan: WalkPlan): number[] {
+  return [...new Set(plan.vesicles.map(one => one.mobilityFactor))].filter(mobility => mobility > 0 && attemptCeiling(plan, mobility) > 0)
+}
+
+/**
+ * Steps after which the waiting law is one exponential, roughly and from above: from the gap between the two slowest modes along the longest axis.
+ * @param plan - compiled plan, held or sealed
+ * @param mobility - chance of moving in a step [1]
+ * @returns steps [1]
+ */
+export function estimateWaitSteps(plan: WalkPlan, mobility: number): number {
+  const longest = Math.max(plan.nx, plan.ny, plan.nz, plan.supply === 'sealed' ? 0 : 2 * plan.nz) + 1
+  const gap = (plan.supply === 'sealed' ? 1 : 3) * 9.87 / (6 * longest * longest)
+  return Math.min(plan.steps, WAIT_LIMIT, Math.ceil((700 + 12 / gap) / mobility))
+}
+
+/** Mirror planes that a plan's sites have: those of its box, judged by where the sites lie. */
+function classCount(plan: WalkPlan): number {
+  const px = plan.nx + 2, py = plan.ny + 2
+  const ends = [[Infinity, 0], [Infinity, 0], [Infinity, 0]] as [number, number][]
+  for (const p of plan.voxelOfSite) {
+    const row = Math.floor(p / px), at = [p % px, row % py, Math.floor(row / py)]
+    ends.forEach((end, axis) => {
+      end[0] = Math.min(end[0], at[axis]!)
+      end[1] = Math.max(end[1], at[axis]!)
+    })
+  }
+  const sizes = [plan.nx, plan.ny, plan.nz]
+  let classes = plan.siteCount
+  ends.forEach(([low, high], axis) => {
+    if (low + high === sizes[axis]! + 1 && high > low) classes = axis === 2 ? classes / 2 : Math.ceil((high - low + 1) / 2) * classes / (high - low + 1)
+  })
+  return Math.ceil(classes)
+}
+
+/**
+ * Bytes that the tables of a plan take at most.
+ * @param plan - compiled plan
+ * @returns bytes; Infinity where the sampler does not apply
+ */
+export function attemptTableBytes(plan: WalkPlan): number {
+  if (plan.supply === 'stirred' || plan.crowding !== 'independent' || plan.siteCount > ATTEMPT_SITE_LIMIT || plan.steps > STEP_LIMIT) return Infinity
+  const classes = classCount(plan), sites = plan.siteCount
+  return attemptMobilities(plan).reduce((bytes, mobility) => {
+    const waits = classes * (estimateWaitSteps(plan, mobility) + 3) * 8
+    // Short waits reach few sites: about a third of the full rows is never made.
+    const landings = classes * landingBins(landingSteps(mobility)).length * 2 * (sites * 4 + 8)
+    return bytes + waits + landings + classes * sites * 2 + sites * 22 + 40_000
+  }, 0)
+}
+
+/** True when a plan can be sampled from attempt to attempt. */
+export function attemptApplies(plan: WalkPlan): boolean {
+  return attemptTableBytes(plan) <= ATTEMPT_TABLE_LIMIT
+}
