@@ -117,22 +117,36 @@ function refreshGhosts(old: usize, mirrors: WordList, ends: WordList): void {
     store<f32>(old + (<usize>load<u32>(pair) << 2), load<f32>(old + (<usize>load<u32>(pair, 4) << 2)))
 }
 
-/** One step of the density: new = own (1 - m) + m (sum of the six neighbours) / 6. */
-function sweep(plan: Plan, old: usize, fresh: usize, mobility: f32): void {
-  const row = <usize>rowCells << 2, layer = row * rows, six = f32x4.splat(6), moving = f32x4.splat(mobility), staying = f32x4.splat(1 - mobility), lazy = mobility < 1
-  const across = <usize>blocks << 4
+@inline
+function meanOfNeighbours(at: usize, row: usize, layer: usize, six: v128): v128 {
+  return f32x4.div(f32x4.add(
+    f32x4.add(f32x4.add(v128.load(at - 4), v128.load(at + 4)), f32x4.add(v128.load(at - row), v128.load(at + row))),
+    f32x4.add(v128.load(at - layer), v128.load(at + layer)),
+  ), six)
+}
+
+/** One step of the density: new = (sum of the six neighbours) / 6. */
+function sweep(plan: Plan, old: usize, fresh: usize): void {
+  const row = <usize>rowCells << 2, layer = row * rows, six = f32x4.splat(6), across = <usize>blocks << 4
   for (let z = 1; z <= plan.nz; z++) {
     for (let y = 1; y <= plan.ny; y++) {
       const start = <usize>cellOf(1, y, z) << 2
       let to = fresh + start
-      for (let at = old + start, end = at + across; at < end; at += 16, to += 16) {
-        const sum = f32x4.add(
-          f32x4.add(f32x4.add(v128.load(at - 4), v128.load(at + 4)), f32x4.add(v128.load(at - row), v128.load(at + row))),
-          f32x4.add(v128.load(at - layer), v128.load(at + layer)),
-        )
-        const mean = f32x4.div(sum, six)
-        v128.store(to, lazy ? f32x4.add(f32x4.mul(v128.load(at), staying), f32x4.mul(mean, moving)) : mean)
-      }
+      for (let at = old + start, end = at + across; at < end; at += 16, to += 16) v128.store(to, meanOfNeighbours(at, row, layer, six))
+    }
+  }
+}
+
+/** The same for a class that moves with probability m: new = own (1 - m) + m (sum of the six neighbours) / 6. */
+function sweepLazy(plan: Plan, old: usize, fresh: usize, mobility: f32): void {
+  const row = <usize>rowCells << 2, layer = row * rows, six = f32x4.splat(6), across = <usize>blocks << 4
+  const moving = f32x4.splat(mobility), staying = f32x4.splat(1 - mobility)
+  for (let z = 1; z <= plan.nz; z++) {
+    for (let y = 1; y <= plan.ny; y++) {
+      const start = <usize>cellOf(1, y, z) << 2
+      let to = fresh + start
+      for (let at = old + start, end = at + across; at < end; at += 16, to += 16)
+        v128.store(to, f32x4.add(f32x4.mul(v128.load(at), staying), f32x4.mul(meanOfNeighbours(at, row, layer, six), moving)))
     }
   }
 }
@@ -189,7 +203,8 @@ function march(
   harvest(old, arrivals.words, arrivals.length, row)
   for (let n = 1; n < plan.steps; n++) {
     refreshGhosts(old, mirrors, ends)
-    sweep(plan, old, fresh, mobility)
+    if (mobility < 1) sweepLazy(plan, old, fresh, mobility)
+    else sweep(plan, old, fresh)
     for (let i = 0; i < edges.length; i += 2) {
       const cell = <usize>load<u32>(edges.words + (<usize>i << 2)) << 2
       store<f32>(fresh + cell, load<f32>(fresh + cell) + mobility * (<f32>load<u32>(edges.words + (<usize>i << 2), 4) * load<f32>(old + cell) / 6))

@@ -3,7 +3,7 @@
  * Exact in law for independent vesicles: numbers and arrivals come from the first-touch table, later steps from the plain walk.
  */
 import { CountTable, Plan } from './plan'
-import { below, drawCount, next, seedStream } from './rng'
+import { drawCount, s0, s1, s2, s3, seedStream, storeState } from './rng'
 import { beginStep, countSites, openSites, sampleAt, sampleRest } from './sites'
 import { openTally } from './tally'
 import { clearVesicles, enter, moveVesicles } from './vesicles'
@@ -27,19 +27,41 @@ export class Arrivals {
 
 let drawn: i32 = 0
 
-/** Draws the arrivals of one class into its list per step. */
+/** Draws the arrivals of one class into its list per step: two draws each, cell and threshold. */
 function drawArrivals(plan: Plan, arrivals: Arrivals, cells: usize, counts: usize, heads: usize): void {
   memory.fill(heads, 0xFF, <usize>plan.steps << 2)
   if (cells == 0) return
-  const voxelCount = arrivals.voxelCount, cellCount = arrivals.cellCount
-  for (let left = drawCount(changetype<CountTable>(counts)); left > 0; left--) {
-    let cell = below(cellCount)
-    if (next() >= load<u32>(cells + (<usize>cell << 3))) cell = load<u32>(cells + (<usize>cell << 3), 4)
-    const step = cell / voxelCount, node = arrivals.nodes + (<usize>drawn << 3), head = heads + (<usize>step << 2)
-    store<i32>(node, load<i32>(head))
-    store<i32>(node, load<i32>(arrivals.voxels + (<usize>(cell - step * voxelCount) << 2)), 4)
-    store<i32>(head, drawn++)
+  const voxels = arrivals.voxels, voxelCount = arrivals.voxelCount, cellCount = <u64>arrivals.cellCount, perVoxel = 1 / <f64>voxelCount
+  const count = drawCount(changetype<CountTable>(counts)), nodes = arrivals.nodes
+  let a = s0, b = s1, c = s2, d = s3, node = drawn
+  for (const end = drawn + count; node < end; node++) {
+    const first = rotl<u32>(a + d, 7) + a
+    let shifted = b << 9
+    c ^= a
+    d ^= b
+    b ^= c
+    a ^= d
+    c ^= shifted
+    d = rotl<u32>(d, 11)
+    const second = rotl<u32>(a + d, 7) + a
+    shifted = b << 9
+    c ^= a
+    d ^= b
+    b ^= c
+    a ^= d
+    c ^= shifted
+    d = rotl<u32>(d, 11)
+    let cell = <u32>((<u64>first * cellCount) >> 32)
+    const at = cells + (<usize>cell << 3)
+    if (second >= load<u32>(at)) cell = load<u32>(at, 4)
+    // The half keeps the product off whole numbers, so that rounding cannot change its floor.
+    const step = <i32>((<f64>cell + 0.5) * perVoxel), head = heads + (<usize>step << 2), to = nodes + (<usize>node << 3)
+    store<i32>(to, load<i32>(head))
+    store<i32>(to, load<i32>(voxels + (<usize>(cell - step * voxelCount) << 2)), 4)
+    store<i32>(head, node)
   }
+  storeState(a, b, c, d)
+  drawn = node
 }
 
 @inline
