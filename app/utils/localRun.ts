@@ -19,6 +19,8 @@ export interface RunStart {
   purpose?: RunPurpose
   /** Walk exactly these blocks, to repeat an outcome that stopped early. */
   ranges?: ReplicateRange[]
+  /** Digest of the outcome that it repeats or checks. */
+  of?: string
   /** Stop when this time is over [s]. */
   timeLimitS?: number
 }
