@@ -65,6 +65,7 @@ async function serve({ where, dataFolder, placed, database, secrets }) {
     NUXT_DATABASE_URL: database.applicationUrl,
     NUXT_SESSION_PASSWORD: process.env.NUXT_SESSION_PASSWORD || secrets.sessionPassword,
     NUXT_DEMO_ACCOUNTS: String(demoAccounts),
+    NUXT_PUBLIC_DEMO_ACCOUNTS: String(demoAccounts),
   }), dataFolder)
   endings.push(() => stopServer(child, dataFolder))
   const ended = once(child, 'exit')

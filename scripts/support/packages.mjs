@@ -67,8 +67,9 @@ async function apt(first, words) {
 /**
  * Installs those of the named packages that are missing.
  * @param {('postgresql' | 'chromium' | 'gcc' | 'python3-numpy')[]} names Debian packages
+ * @param {(sentence: string) => void} [tell] where progress is told
  */
-export async function installPackages(names) {
+export async function installPackages(names, tell = say) {
   const missing = names.filter(name => !NEEDS[name].present())
   if (!missing.length) return
   const wanted = missing.flatMap(name => WITH[name])
@@ -78,11 +79,11 @@ export async function installPackages(names) {
   const first = await privilege()
   if (!first) throw new Refusal(`This machine lacks ${what}, and only root may install it. ${byHand}`)
   const started = Date.now()
-  say(`Installing Debian's ${wanted.join(', ')} …`)
+  tell(`Installing Debian's ${wanted.join(', ')} …`)
   const update = await apt(first, ['update'])
   const install = () => apt(first, ['install', ...(missing.includes('chromium') ? [] : ['--no-install-recommends']), ...wanted])
   const done = missing.includes('postgresql') ? await withoutMainCluster(first, install) : await install()
   if (done.status !== 0 || missing.some(name => name !== 'python3-numpy' && !NEEDS[name].present()))
     throw new Refusal(`${what[0].toUpperCase()}${what.slice(1)} could not be installed; apt-get ended with ${done.status}${update.status === 0 ? '' : ' (its lists could not be fetched: is there a network connection?)'}. It can be repeated safely. apt-get says:\n${lastLines(done.output)}`)
-  say(`Debian's ${wanted.join(', ')}: installed (${duration(Date.now() - started)}).`)
+  tell(`Debian's ${wanted.join(', ')}: installed (${duration(Date.now() - started)}).`)
 }

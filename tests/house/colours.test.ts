@@ -3,8 +3,8 @@ import { describe, expect, it } from 'vitest'
 import { filesIn, textOf, withoutComments } from './support/sources'
 
 const TOKENS = 'app/assets/css/main.css'
-/** A hash and 3, 4, 6 or 8 hexadecimal digits, but no link to a part of a page; or a colour function with numbers in it, but what browsers answer for "transparent". */
-const LITERAL = /(?<!href="|to="|href: '|&)#(?:[0-9a-f]{8}|[0-9a-f]{6}|[0-9a-f]{3,4})(?![\w-])|\b(?:rgba?|hsla?|oklch|oklab|hwb|lch)\(\s*[\d.](?!, 0, 0, 0\))/i
+/** A hash and 3, 4, 6 or 8 hexadecimal digits, but no link to a part of a page; or a colour function with numbers in it, but the black and the transparent that browsers answer where nothing is set. */
+const LITERAL = /(?<!href="|to="|href: '|&)#(?:[0-9a-f]{8}|[0-9a-f]{6}|[0-9a-f]{3,4})(?![\w-])|\b(?:rgba?|hsla?|oklch|oklab|hwb|lch)\(\s*[\d.](?!(?:, 0){2,3}\))/i
 
 describe('colour literals', () => {
   it('are recognised', () => {
