@@ -16,12 +16,15 @@ function drawing(seed: string): () => number {
 export function contourPaths(seed: string): string[] {
   const next = drawing(seed)
   const waves = [1, 2, 3].map(order => ({ order, size: (0.22 - 0.05 * order) * (0.5 + next()), phase: 2 * Math.PI * next() }))
+  const shape = Array.from({ length: POINTS }, (_, i) => 1 + waves.reduce((sum, { order, size, phase }) => sum + size * Math.cos(order * 2 * Math.PI * i / POINTS + phase), 0))
+  /** The outermost curve touches the field and does not leave it. */
+  const step = 258 / COUNT / Math.max(...shape)
   return Array.from({ length: COUNT }, (_, ring) => {
-    const mean = 44 + ring * 38
+    const mean = step * (ring + 1)
     const points = Array.from({ length: POINTS }, (_unused, i) => {
       const angle = 2 * Math.PI * i / POINTS
-      const radius = mean * (1 + waves.reduce((sum, { order, size, phase }) => sum + size * Math.cos(order * angle + phase), 0))
-      return `${(320 + 1.12 * radius * Math.cos(angle)).toFixed(1)} ${(260 + 0.88 * radius * Math.sin(angle)).toFixed(1)}`
+      const radius = mean * shape[i]!
+      return `${(320 + 1.2 * radius * Math.cos(angle)).toFixed(1)} ${(260 + 0.98 * radius * Math.sin(angle)).toFixed(1)}`
     })
     return `M${points.join('L')}Z`
   })
