@@ -62,6 +62,11 @@ class WalkBooks {
     if (found) this.run.precision = [...this.run.precision, { replicates: found.replicates, standardError: found.standardError }]
   }
 
+  /** Nothing is on its way to the desk any more. */
+  settled(): Promise<unknown> {
+    return this.pending
+  }
+
   async outcome(engine: EngineId, partial: boolean, landingError: number) {
     await this.pending
     return this.desk.outcome(this.run.localId, { engine, partial, landingError }, this.tail)
@@ -124,6 +129,7 @@ export function useRunWalk() {
     run.durationMs = result?.durationMs ?? run.elapsedMs
     run.workers = result?.workers ?? run.workers
     const partial = result?.partial ?? true
+    await books.settled()
     if (books.blocks.length > 0) {
       run.outcome = await books.outcome(run.engine!, partial, run.landingError)
       run.replicatesDone = run.outcome.replicates

@@ -1,8 +1,8 @@
 /** The sentences of an outcome: finding first, interval, then the reason. */
 import type { Outcome, OutcomeClass } from '#shared/schemas/outcome'
 import { stepSeconds, type Scenario } from '#shared/schemas/scenario'
-import { formatInterval, formatNumber, formatTime, formatWithError, type NumberStyle } from '#shared/units'
-import type { SentencePart } from './expectationWords'
+import { type NumberStyle, formatInterval, formatNumber, formatQuantity, formatTime, formatWithError } from '#shared/units'
+import type { SentencePart } from './sentenceParts'
 
 type Reason = Outcome['agreement']['reason']
 const REASON_WORDS: Record<Reason, string> = {
@@ -77,7 +77,7 @@ export function outcomeNumbers(outcome: Outcome, style: NumberStyle = {}): Sente
 /** So far: the head of a run under way. */
 export function soFarSentence(done: number, wanted: number, remainingMs: number | null, outcome: Outcome | null, style: NumberStyle = {}): SentencePart[] {
   const left = remainingMs === null ? '' : `, about ${formatTime(Math.max(1, Math.round(remainingMs / 1000)), { ...style, significant: 2 })} left`
-  const head: SentencePart[] = [{ text: `${formatNumber(done, { significant: 9 })} of ${formatNumber(wanted, { significant: 9 })}`, strong: true }, { text: ` replicates done${left}. ` }]
+  const head: SentencePart[] = [{ text: `${formatQuantity(done, 'count')} of ${formatQuantity(wanted, 'count')}`, strong: true }, { text: ` replicates done${left}. ` }]
   if (!outcome || outcome.ratio.value === null) return [...head, { text: 'The first numbers come with the first replicates.' }]
   return [...head, { text: `So far the walk takes ${ratioText(outcome.ratio.value, style)} times as long as the closed form ` }, { text: interval(outcome.ratio, style, ''), quiet: true }, { text: '.' }]
 }
