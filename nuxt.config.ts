@@ -98,4 +98,6 @@ export default defineNuxtConfig({
     },
   },
   tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
+  // Vite's development server answers worker scripts without the header that `require-corp` asks for.
+  $development: { security: { headers: { crossOriginEmbedderPolicy: false } } },
 })

@@ -8,10 +8,10 @@ const LOG_TIMES = 140, LINEAR_TIMES = 80
 /** 95 % of a normal law lies within this many standard errors. */
 const Z95 = 1.959964
 
-/** Times worth drawing between one step and the end [s]: spaced for a logarithmic and for a linear axis. */
+/** Times worth drawing from 1/2000 of the duration (at least one step) to its end [s]: spaced for a logarithmic and for a linear axis. */
 export function drawnTimes(scenario: Scenario): number[] {
   const last = scenario.schedule.durationS
-  const first = Math.min(stepSeconds(scenario.medium), last / 100)
+  const first = Math.min(Math.max(stepSeconds(scenario.medium), last / 2000), last / 100)
   const log = Array.from({ length: LOG_TIMES }, (_, i) => first * (last / first) ** (i / (LOG_TIMES - 1)))
   const linear = Array.from({ length: LINEAR_TIMES }, (_, i) => last * i / (LINEAR_TIMES - 1))
   const around = scenario.schedule.releases.flatMap(({ atMs }) => [atMs / 1000, atMs / 1000 + first])
