@@ -32,8 +32,10 @@ export function createWalker(load: () => Promise<WebAssembly.Module | BufferSour
       const walk = known ?? ready.prepare(compilePlan(scenario), algorithm)
       if (!known && tables) walk.adoptTables(tables)
       remember(key, walk)
-      const { tableBytes, landingError } = walk // tables not adopted are built here at the latest
-      current = { walk, words: seedWords(seed), prepareMs: performance.now() - started }
+      const words = seedWords(seed)
+      walk.run(words[0], words[1], 0, 0) // no replicate, but tables that were not adopted are built here and not in the first chunk
+      const { tableBytes, landingError } = walk
+      current = { walk, words, prepareMs: performance.now() - started }
       return { version: ready.version, tableBytes, landingError, prepareMs: current.prepareMs }
     },
     exportTables() {

@@ -1,9 +1,8 @@
 /** What a run will cost, from the scenario alone; and which sizes are refused, with the estimate and a smaller suggestion. */
 import { SAVED_REPLICATES_LIMIT } from '../schemas/api/run'
 import type { FieldProblem } from '../schemas/problem'
-import { SCENARIO_LIMITS, stepSeconds, type Scenario } from '../schemas/scenario'
+import { occupancyOf, SCENARIO_LIMITS, stepSeconds, type Scenario } from '../schemas/scenario'
 import { siteTotal } from '../kinetics/closed-form'
-import { hitRates } from '../kinetics/rates'
 import { blockRanges } from './merge'
 import { megabytes, routeAlgorithm, TABLE_LIMIT_BYTES } from './route'
 import { latticeSize, type LatticeSize } from './table-size'
@@ -16,7 +15,7 @@ export { SAVED_REPLICATES_LIMIT, TABLE_LIMIT_BYTES }
 /** Seconds per unit of work, one worker, WASM, measured on two 2-core machines; the run's own pace refines the estimate. */
 const SECONDS_PER = {
   vesicleStep: 3e-9, exclusiveVesicleStep: 5.8e-9, attempt: 3.5e-8, touchedStep: 2.8e-9,
-  solvedVoxelStep: 5e-10, landingByte: 4e-8, replicate: 2e-5, stirredSiteStep: 2.6e-9,
+  solvedVoxelStep: 5e-10, landingByte: 4e-8, replicate: 2e-5, sample: 3e-8, stirredSiteStep: 2.6e-9,
 } as const
 /** Share of the vesicles in the box that have touched a site and must be followed, on average over a long run. */
 const TOUCHED = { held: 0.1, sealed: 0.5 } as const
@@ -79,18 +78,14 @@ function setupOf(algorithm: Algorithm | null, size: LatticeSize): number {
   return algorithm === 'attempt' ? size.attemptSolve * SECONDS_PER.solvedVoxelStep + size.attemptBytes * SECONDS_PER.landingByte : 0
 }
 
-function replicateOf(algorithm: Algorithm | null, scenario: Scenario, { sites, freeVoxels, steps }: LatticeSize): number {
-  const { medium, reservoir } = scenario
-  const occupancy = medium.densityPerUm3 * (medium.spacingNm / 1000) ** 3
-  const vesicles = occupancy * freeVoxels
-  if (algorithm === 'stirred') return SECONDS_PER.replicate + sites * steps * SECONDS_PER.stirredSiteStep
-  if (algorithm === 'touch') return SECONDS_PER.replicate + vesicles * TOUCHED[reservoir.supply === 'sealed' ? 'sealed' : 'held'] * steps * SECONDS_PER.touchedStep
-  if (algorithm === 'attempt') {
-    const most = Math.max(...scenario.sites.map(site => site.attachProbability))
-    const attemptsPerStep = hitRates(scenario).reduce((sum, hits, i) => sum + hits * scenario.vesicles[i]!.attachFactor, 0) * most * stepSeconds(medium) * sites
-    return SECONDS_PER.replicate + attemptsPerStep * steps * SECONDS_PER.attempt
-  }
-  return SECONDS_PER.replicate + vesicles * steps * (medium.crowding === 'exclusive' ? SECONDS_PER.exclusiveVesicleStep : SECONDS_PER.vesicleStep)
+function replicateOf(algorithm: Algorithm | null, scenario: Scenario, size: LatticeSize): number {
+  const { medium, reservoir, schedule } = scenario, { sites, freeVoxels, steps } = size
+  const vesicles = occupancyOf(medium) * freeVoxels
+  const base = SECONDS_PER.replicate + Math.min(steps, schedule.durationS * 1000 / schedule.sampleEveryMs) * SECONDS_PER.sample
+  if (algorithm === 'stirred') return base + sites * steps * SECONDS_PER.stirredSiteStep
+  if (algorithm === 'touch') return base + vesicles * TOUCHED[reservoir.supply === 'sealed' ? 'sealed' : 'held'] * steps * SECONDS_PER.touchedStep
+  if (algorithm === 'attempt') return base + size.attemptsPerStep * steps * SECONDS_PER.attempt
+  return base + vesicles * steps * (medium.crowding === 'exclusive' ? SECONDS_PER.exclusiveVesicleStep : SECONDS_PER.vesicleStep)
 }
 
 /** Bytes of the blocks as JSON: sums and squares per sample, events and exposure per replicate; digits by size of the numbers. */

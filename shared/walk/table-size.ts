@@ -1,6 +1,6 @@
 /** Sizes of lattice and tables, judged from the scenario alone: nothing large is allocated to find out that it is too large. */
 import type { Scenario } from '../schemas/scenario'
-import { attemptMobilities, attemptTableBytes as attemptBytesOfPlan, estimateWaitSteps } from './attempt-size'
+import { attemptCeiling, attemptMobilities, attemptTableBytes as attemptBytesOfPlan, estimateWaitSteps } from './attempt-size'
 import { frameOf, voxelCounts } from './frame'
 import type { WalkPlan } from './types'
 
@@ -22,6 +22,8 @@ export interface LatticeSize {
   /** Voxel-steps of the linear solves behind the tables of `attempt`, and of `touch`. */
   attemptSolve: number
   touchSolve: number
+  /** Attempts that `attempt` draws in a step of one replicate [1]. */
+  attemptsPerStep: number
 }
 
 /** Padded indices of the first and last voxel in front of a site: all that the size of tables asks of the sites' places. */
@@ -53,5 +55,6 @@ export function latticeSize(scenario: Scenario): LatticeSize {
     touchBytes: walks ? BYTES_PER_TOUCH_CELL * steps * sites * moving : Infinity,
     attemptSolve: walks ? attemptMobilities(plan).reduce((sum, mobility) => sum + voxels * estimateWaitSteps(plan, mobility), 0) : 0,
     touchSolve: voxels * steps * moving,
+    attemptsPerStep: plan.occupancy / 6 * sites * plan.vesicles.reduce((sum, { share, mobilityFactor }) => sum + share * mobilityFactor * (mobilityFactor > 0 ? attemptCeiling(plan, mobilityFactor) : 0), 0),
   }
 }
