@@ -75,7 +75,8 @@ function solveWaits(host: KernelHost, scratch: Scratch, plan: WalkPlan, box: Rib
     placeBox(host, scratch, folded, holes, returns, mobility),
     scratch.place(Int32Array.from(fronts)), fronts.length,
     scratch.place(Int32Array.from(starts.representatives, site => folded.fold(box.fronts[site]!))), starts.count,
-    steps, 32 * Math.round(8 / mobility), sealed ? 1 : 0, law, survival, scratch.room(8 * (Math.floor(steps / 32) + 1) * starts.count), 0, 0,
+    // A class that hardly ever moves would overflow the window; beyond the steps solved its length no longer matters.
+    steps, 32 * Math.min(1 << 20, Math.round(8 / mobility)), sealed ? 1 : 0, law, survival, scratch.room(8 * (Math.floor(steps / 32) + 1) * starts.count), 0, 0,
     { double: attemptChance / 6 * mobility }, { double: 0 },
   ])
   attemptExports(host).solveWaits(job)
