@@ -1,8 +1,8 @@
 /** The closed form of refill at stirred supply: τ = 1/(D·ρ·a·s) per kind of site, and the share-weighted mean. */
-import type { Scenario } from '../schemas/scenario'
+import { stepSeconds, type Scenario } from '../schemas/scenario'
 import { attachRates, hitRates, siteTotal } from './rates'
 import { realisedCounts } from './realised-counts'
-import { statesOfSite } from './site-course'
+import { statesOfSite, type Course } from './site-course'
 
 export { attachRates, hitRates, siteTotal } from './rates'
 
@@ -52,9 +52,16 @@ export interface FilledCurve {
   ready: number[][] | null
 }
 
+/** Releases come at the nearest step, as in the walk. */
+function courseOf({ medium, schedule }: Scenario): Course {
+  const stepS = stepSeconds(medium)
+  const releases = schedule.releases.map(({ atMs, fraction }) => ({ atS: Math.round(atMs / 1000 / stepS) * stepS, fraction }))
+  return { initialFill: schedule.initialFill, decline: schedule.decline, releases }
+}
+
 /**
  * Expected filled (and ready) sites of one ribbon under the closed form's assumption, with initial fill, later releases, detachment, the two-step readiness and decline.
- * Sites filled at the start are ready. A release empties ready sites only and restarts the decline.
+ * Sites filled at the start are ready. A release comes at the nearest step, empties ready sites only and restarts the decline.
  * Exact, except where decline meets detachment or readiness (error stated at `statesOfSite`).
  * @param scenario - with defaults filled in
  * @param timesS - ascending times from 0 [s]
@@ -65,10 +72,11 @@ export function closedFormFilled(scenario: Scenario, timesS: readonly number[]):
   timesS.forEach((time, i) => {
     if (!(time >= 0 && time < Infinity) || (i > 0 && time < timesS[i - 1]!)) throw new RangeError('closedFormFilled: times must ascend from 0')
   })
+  const course = courseOf(scenario)
   const states = closedForm(scenario).classes.map((one, j) => {
     const { detachPerS, readyPerS } = scenario.sites[j]!
     const rates = { attachPerS: one.ratePerS, detachPerS, readyPerS }
-    return statesOfSite(rates, scenario.schedule, timesS).map(state => ({ filled: one.sites * state.filled, ready: one.sites * state.ready }))
+    return statesOfSite(rates, course, timesS).map(state => ({ filled: one.sites * state.filled, ready: one.sites * state.ready }))
   })
   return {
     filled: states.map(row => row.map(state => state.filled)),

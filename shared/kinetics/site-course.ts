@@ -1,7 +1,15 @@
 /** One site over the schedule of a scenario: initial fill, releases, decline, detachment, readiness; continuous time. */
-import type { Scenario } from '../schemas/scenario'
 import { declineFactor, declineIntegral, type Decline } from './decline'
 import { evolveSite, releaseSite, type SiteRates, type SiteState } from './site-states'
+
+/** What happens to a site over time. */
+export interface Course {
+  /** Chance that it is filled (and ready) at the start [1]. */
+  initialFill: number
+  decline: Decline | null
+  /** Later stimuli in order of time: when [s], and the chance that a ready site releases [1]. */
+  releases: readonly { atS: number, fraction: number }[]
+}
 
 /** Longest sub-step under decline, in units of its time constant; see the error in the docstring below. */
 const DECLINE_SUBSTEP = 1 / 64
@@ -28,24 +36,24 @@ function evolve(state: SiteState, rates: SiteRates, decline: Decline | null, fro
 }
 
 /**
- * State of one site at ascending times; a time that equals a release reads the state just before it.
+ * State of one site at ascending times; a time that equals a release (to 1e-9 of itself) reads the state just before it.
  * Exact, except where decline meets detachment or readiness: there sub-steps of τc/64 leave an error below 2e-5 (measured against a fine Runge–Kutta integration, stiff cases included).
  * @param rates - attachment at rest, detachment, readiness [1/s]
- * @param schedule - the scenario's schedule (initial fill, releases, decline)
+ * @param course - initial fill, releases, decline
  * @param timesS - ascending times from 0 [s]
  * @returns one state per time [1]
  */
-export function statesOfSite(rates: SiteRates, schedule: Scenario['schedule'], timesS: readonly number[]): SiteState[] {
-  let state: SiteState = { filled: schedule.initialFill, ready: schedule.initialFill }
+export function statesOfSite(rates: SiteRates, course: Course, timesS: readonly number[]): SiteState[] {
+  let state: SiteState = { filled: course.initialFill, ready: course.initialFill }
   let lastRelease = 0, now = 0, next = 0
   const forward = (to: number) => {
-    state = evolve(state, rates, schedule.decline, now - lastRelease, to - lastRelease)
+    state = evolve(state, rates, course.decline, now - lastRelease, to - lastRelease)
     now = to
   }
   return timesS.map((time) => {
-    for (; next < schedule.releases.length && schedule.releases[next]!.atMs / 1000 < time; next++) {
-      const release = schedule.releases[next]!
-      forward(release.atMs / 1000)
+    for (; next < course.releases.length && course.releases[next]!.atS * (1 + 1e-9) < time; next++) {
+      const release = course.releases[next]!
+      forward(release.atS)
       state = releaseSite(state, release.fraction)
       lastRelease = now
     }

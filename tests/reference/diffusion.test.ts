@@ -2,6 +2,7 @@
 import { describe, expect, it } from 'vitest'
 import * as targets from '../../shared/kinetics/diffusion-targets'
 import * as walls from '../../shared/kinetics/diffusion-walls'
+import { visitsTo } from '../../shared/kinetics/lattice-constants'
 import { stepLine } from '../../shared/kinetics/line-lattice'
 import { erf } from '../../shared/kinetics/special'
 import { Stream, seedWords, stateOf } from '../../shared/walk/streams'
@@ -81,12 +82,11 @@ describe('disks and plates', () => {
   it('D-15 first arrival at a plane, Carslaw & Jaeger 1959', () => {
     expectRelative([0.01, 0.1, 1].map(t => walls.reachedPlane(0.1, 0.1, t)), [0.025347319, 0.47950012, 0.82306327], 2e-8)
   })
-  it('D-20 a reflecting wall doubles: half-space disk 4Da is half of the two-sided 8Da (method of images)', () => {
-    const free = (r: number) => 1 / (4 * Math.PI * 0.1 * r)
-    const image = (height: number, r: number) => free(Math.abs(r - height)) + free(Math.abs(r + height))
-    expect(image(0, 0.3) / free(0.3)).toBe(2)
-    // A sphere cut in half by the wall takes half of the whole one: 2πDRc; the oblate limit of both is 4Dac and 8Dac.
-    expect(targets.diskFlux(bath, R) * 2).toBeCloseTo(8 * 0.1 * R * 1000, 12)
+  it('D-20 a reflecting wall doubles (method of images), in the continuum and on the lattice', () => {
+    // Oblate spheroid, 4πDc·√(a² − h²)/arccos(h/a), flattened to a two-sided disk: 8Dac, twice the disk on a wall.
+    expect(2 * targets.diskFlux(bath, R)).toBeCloseTo(4 * Math.PI * 0.1 * 1000 * R / Math.acos(0), 10)
+    // Visits along a wall: own cell and its image one spacing below; far away twice the visits without a wall.
+    expect((visitsTo(30, 0, 0) + visitsTo(30, 0, 1)) / visitsTo(30, 0, 0)).toBeCloseTo(2, 2)
   })
 })
 

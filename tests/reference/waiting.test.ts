@@ -99,12 +99,12 @@ describe('filling', () => {
   it('W-14 reversible attachment, and the closed form\'s curve settles there', () => {
     const { occupancy, tauS } = waiting.reversible(1, 0.1)
     expectRelative([occupancy, tauS], [0.90909091, 0.90909091], 2e-8)
-    const schedule = { durationS: 60, sampleEveryMs: 100, initialFill: 0, releases: [], decline: null }
-    expect(statesOfSite({ attachPerS: 1, detachPerS: 0.1, readyPerS: null }, schedule, [60])[0]!.filled).toBeCloseTo(occupancy, 12)
+    const course = { initialFill: 0, releases: [], decline: null }
+    expect(statesOfSite({ attachPerS: 1, detachPerS: 0.1, readyPerS: null }, course, [60])[0]!.filled).toBeCloseTo(occupancy, 12)
   })
   it('W-15 capture, then becoming ready: a sigmoid start', () => {
-    const schedule = { durationS: 60, sampleEveryMs: 100, initialFill: 0, releases: [], decline: null }
-    const states = statesOfSite({ attachPerS: 1.25, detachPerS: 0, readyPerS: 4 }, schedule, [0.1, 0.5, 1, 2])
+    const course = { initialFill: 0, releases: [], decline: null }
+    const states = statesOfSite({ attachPerS: 1.25, detachPerS: 0, readyPerS: 4 }, course, [0.1, 0.5, 1, 2])
     expectRelative(states.map(state => state.ready), [0.021059072, 0.28295396, 0.59159104, 0.88075612], 5e-8)
   })
 })

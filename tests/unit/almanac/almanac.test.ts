@@ -5,6 +5,7 @@ import { cautionsFor } from '../../../shared/almanac/cautions'
 import { DEMO_SCENARIOS, SAMPLE_SCENARIO } from '../../../shared/almanac/demo-scenarios'
 import { PRESETS } from '../../../shared/almanac/presets'
 import { PUBLISHED_RANGES, publishedRange } from '../../../shared/almanac/ranges'
+import { unitSlip } from '../../../shared/almanac/slips'
 import { ScenarioSchema } from '../../../shared/schemas/scenario'
 import { UNITS } from '../../../shared/units'
 import { compilePlan } from '../../../shared/walk/plan'
@@ -107,5 +108,16 @@ describe('assumptions', () => {
       schedule: { decline: { restFactor: 0.1, timeConstantS: 1 } },
     })).map(one => one.id)
     for (const id of ['A-06', 'A-08', 'A-10', 'A-11']) expect(rich).not.toContain(id)
+  })
+})
+
+describe('slips of the unit', () => {
+  it('are asked back, both ways', () => {
+    expect(unitSlip('medium.spacingNm', 50_000)).toEqual({ value: 50, sentence: '50.0\u00A0µm? Vesicles are near 45 nm. 50.0\u00A0nm may be meant.' })
+    expect(unitSlip('medium.spacingNm', 0.05)).toMatchObject({ value: 50 })
+    expect(unitSlip('reservoir.sizeUm.1', 2000)).toMatchObject({ value: 2 })
+  })
+  it('are not suspected in plausible values, in values that no slip explains, or elsewhere', () => {
+    for (const [path, value] of [['medium.spacingNm', 50], ['medium.spacingNm', 400], ['medium.spacingNm', 0], ['medium.densityPerUm3', 5e6], ['reservoir.sizeUm.0', 2]] as const) expect(unitSlip(path, value)).toBeNull()
   })
 })

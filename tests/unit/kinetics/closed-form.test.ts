@@ -3,6 +3,7 @@ import { describe, expect, it } from 'vitest'
 import { closedForm, closedFormFilled } from '../../../shared/kinetics/closed-form'
 import { realisedCounts } from '../../../shared/kinetics/realised-counts'
 import { statesOfSite } from '../../../shared/kinetics/site-course'
+import { stepSeconds } from '../../../shared/schemas/scenario'
 import { scenarioWith } from './support'
 
 const times = [0, 0.01, 0.1, 0.5, 1, 2, 5, 10, 30]
@@ -85,9 +86,9 @@ describe('closedFormFilled', () => {
     [1.2, 0.3, 5, { restFactor: 0.1, timeConstantS: 1.5 }], [3, 0, 1, { restFactor: 0, timeConstantS: 0.2 }], [8, 2, 6, { restFactor: 0.3, timeConstantS: 0.7 }],
     [800, 300, 500, { restFactor: 0.1, timeConstantS: 0.5 }], [800, 300, 5, { restFactor: 0, timeConstantS: 2 }],
   ])('agrees with a Runge–Kutta integration: attach %s, detach %s, ready %s, decline %o', (k, d, r, decline) => {
-    const schedule = { durationS: 60, sampleEveryMs: 20, initialFill: 0.12, releases: [], decline }
+    const course = { initialFill: 0.12, releases: [], decline }
     for (const end of [0.05, 0.4, 2.5, 9]) {
-      const mine = statesOfSite({ attachPerS: k, detachPerS: d, readyPerS: r }, schedule, [end])[0]!
+      const mine = statesOfSite({ attachPerS: k, detachPerS: d, readyPerS: r }, course, [end])[0]!
       const other = integrate(k, d, r, decline, 0.12, end, 20_000)
       expect(Math.abs(mine.filled - other.filled)).toBeLessThan(decline ? 2e-5 : 1e-9)
       expect(Math.abs(mine.ready - other.ready)).toBeLessThan(decline ? 2e-5 : 1e-9)
@@ -95,15 +96,24 @@ describe('closedFormFilled', () => {
   })
   it('empties a fraction at a release, reads before it at its own time, and restarts the decline', () => {
     const scenario = scenarioWith({ schedule: { durationS: 60, sampleEveryMs: 20, releases: [{ atMs: 2000, fraction: 0.5 }], decline: { restFactor: 0.1, timeConstantS: 1.5 } } })
-    const { filled } = closedFormFilled(scenario, [2, 2.0000001, 3])
+    const { filled } = closedFormFilled(scenario, [480 * stepSeconds(scenario.medium), 2.0000001, 3])
     expect(filled[0]![1]! / filled[0]![0]!).toBeCloseTo(0.5, 5)
     const empty = (29 - filled[0]![0]! / 2) / 29
     expect(filled[0]![2]).toBeCloseTo(29 * (1 - empty * Math.exp(-1.2 * (0.1 + 1.35 * (1 - Math.exp(-1 / 1.5))))), 8)
   })
+  it('reads every release at its step as the walk does: the sample of that step still shows what was before', () => {
+    for (let atMs = 1000; atMs < 1030; atMs++) {
+      const scenario = scenarioWith({ schedule: { releases: [{ atMs, fraction: 1 }] } }), stepS = stepSeconds(scenario.medium)
+      const step = Math.round(atMs / 1000 / stepS)
+      const { filled } = closedFormFilled(scenario, [step * stepS, (step + 1) * stepS])
+      expect(filled[0]![0]).toBeGreaterThan(15)
+      expect(filled[0]![1]).toBeLessThan(0.2)
+    }
+  })
   it('stays finite and within the sites at extreme rates', () => {
     for (const [k, d, r] of [[1e8, 1e4, 1e4], [1e-12, 0, 1e-6], [0, 0, 1], [0, 1e4, null], [1e5, 0, 1e4]] as const)
       for (const decline of [null, { restFactor: 0, timeConstantS: 1e-6 }, { restFactor: 0.5, timeConstantS: 3600 }]) {
-        for (const state of statesOfSite({ attachPerS: k, detachPerS: d, readyPerS: r }, { durationS: 3600, sampleEveryMs: 20, initialFill: 0.5, releases: [{ atMs: 1000, fraction: 1 }], decline }, [0, 1e-9, 1, 10, 3600])) {
+        for (const state of statesOfSite({ attachPerS: k, detachPerS: d, readyPerS: r }, { initialFill: 0.5, releases: [{ atS: 1, fraction: 1 }], decline }, [0, 1e-9, 1, 10, 3600])) {
           expect(state.filled).toBeGreaterThanOrEqual(-1e-12)
           expect(state.filled).toBeLessThanOrEqual(1 + 1e-12)
           expect(state.ready).toBeLessThanOrEqual(state.filled)
