@@ -65,12 +65,12 @@ async function shortCold({ workshop }: Tools): Promise<Measured> {
 
 async function shortWarm({ workshop }: Tools): Promise<Measured> {
   const prepared = await freshWalk(shortSealed, 'attempt')
-  // Some milliseconds a call: ten calls a round keep the clock's and the collector's grain out of it.
+  // Some milliseconds a call: fifty calls a round keep the clock's and the collector's grain out of it.
   const ours = async () => await timed(() => {
-    for (let i = 0; i < 10; i++) walk(prepared, 0, REPLICATES)
-  }) / 10
+    for (let i = 0; i < 50; i++) walk(prepared, 0, REPLICATES)
+  }) / 50
   const paired = await pairUp(ours, scaled(plainWalk(workshop, shortSealed), REPLICATES))
-  return { ...paired, note: 'by attempt, tables cached; mean of ten calls a round' }
+  return { ...paired, note: 'by attempt, tables cached; mean of fifty calls a round' }
 }
 
 async function shortNumpy({ workshop, python }: Tools): Promise<Measured> {
