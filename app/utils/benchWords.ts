@@ -3,11 +3,11 @@ import type { BenchHome } from '#shared/schemas/api/bench'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Role } from '#shared/permissions'
 import { formatInterval, formatNumber, formatWithError, type NumberStyle } from '#shared/units'
+import type { SentencePart } from './sentenceParts'
 
 type Verdict = Outcome['agreement']['verdict']
 export type HomeScenario = BenchHome['scenarios'][number]
 export type HomeChange = BenchHome['changes'][number]
-export interface SentencePart { text: string, strong?: boolean, quiet?: boolean }
 
 export const VERDICT_CLASS: Record<Verdict, string> = { agrees: 'good', slower: 'caution', faster: 'caution', undecided: 'caution' }
 
