@@ -10,6 +10,8 @@ const FREE: u8 = 0
 const REFLECTING: u8 = 1
 const SITES: u8 = 2
 const TAKEN: u8 = 4
+/** Set in the flags of faces with sites and of the bath alone: the one branch of the hot loops; blocked hops would be mispredicted too often. */
+const RARE: u8 = 2
 /** A draw of this size from the gap table means no entry within as many faces. */
 const GAP_CAP: i32 = 512
 
@@ -128,25 +130,22 @@ function moveIndependent(plan: Plan, vesicleClass: i32, n: i32): void {
     const direction = <u32>((<u64>r * 6) >> 32)
     const target = voxel + load<i32>(offsets + (<usize>direction << 2))
     const flag = load<u8>(flags + <usize>target)
-    if (flag == FREE) {
-      store<i32>(at, target)
+    if ((flag & RARE) == 0) {
+      store<i32>(at, select(target, voxel, flag == FREE))
       at += 4
       continue
     }
-    if (flag != REFLECTING) {
-      storeState(a, b, c, d)
-      const gone = flag != SITES || hits(plan, voxel, direction, vesicleClass, n)
-      a = s0
-      b = s1
-      c = s2
-      d = s3
-      if (gone) {
-        end -= 4
-        store<i32>(at, load<i32>(end))
-        continue
-      }
+    storeState(a, b, c, d)
+    const gone = flag != SITES || hits(plan, voxel, direction, vesicleClass, n)
+    a = s0
+    b = s1
+    c = s2
+    d = s3
+    if (gone) {
+      end -= 4
+      store<i32>(at, load<i32>(end))
     }
-    at += 4
+    else at += 4
   }
   storeState(a, b, c, d)
   setCount(vesicleClass, <i32>((end - list) >> 2))
@@ -169,28 +168,26 @@ function moveExclusive(plan: Plan, vesicleClass: i32, n: i32): void {
     const direction = <u32>((<u64>r * 6) >> 32)
     const target = voxel + load<i32>(offsets + (<usize>direction << 2))
     const flag = load<u8>(cells + <usize>target)
-    if (flag == FREE) {
-      store<u8>(cells + <usize>voxel, FREE)
-      store<u8>(cells + <usize>target, TAKEN)
-      store<i32>(at, target)
+    if ((flag & RARE) == 0) {
+      const free = flag == FREE
+      store<u8>(cells + <usize>voxel, select(FREE, TAKEN, free))
+      store<u8>(cells + <usize>target, select(TAKEN, flag, free))
+      store<i32>(at, select(target, voxel, free))
       at += 4
       continue
     }
-    if (flag != REFLECTING && flag != TAKEN) {
-      storeState(a, b, c, d)
-      const gone = flag == SITES ? hits(plan, voxel, direction, vesicleClass, n) : chance(1 - plan.occupancy)
-      a = s0
-      b = s1
-      c = s2
-      d = s3
-      if (gone) {
-        store<u8>(cells + <usize>voxel, FREE)
-        end -= 4
-        store<i32>(at, load<i32>(end))
-        continue
-      }
+    storeState(a, b, c, d)
+    const gone = flag == SITES ? hits(plan, voxel, direction, vesicleClass, n) : chance(1 - plan.occupancy)
+    a = s0
+    b = s1
+    c = s2
+    d = s3
+    if (gone) {
+      store<u8>(cells + <usize>voxel, FREE)
+      end -= 4
+      store<i32>(at, load<i32>(end))
     }
-    at += 4
+    else at += 4
   }
   storeState(a, b, c, d)
   setCount(vesicleClass, <i32>((end - list) >> 2))
