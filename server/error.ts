@@ -16,7 +16,7 @@ function refusalOf(error: unknown): Refusal {
 }
 
 export default async function writeProblem(error: unknown, event: H3Event) {
-  if (event.handled || !getRequestURL(event).pathname.startsWith('/api/')) return
+  if (event.handled || !/^\/api(\/|$)/.test(getRequestURL(event).pathname)) return
   const refusal = refusalOf(error)
   const body = refusal.toProblem()
   if (body.code === 'fault') console.error(`[fault] ${event.method} ${getRequestURL(event).pathname}`, error instanceof Error ? error.cause ?? error : error)

@@ -35,7 +35,7 @@ export class Examiner {
   }
 
   private start(): Worker {
-    const worker = new Worker(new URL(examinerUrl))
+    const worker = new Worker(examinerUrl())
     worker.unref()
     worker.on('message', (answer: ExaminerAnswer) => this.settle(answer))
     worker.on('error', error => this.worker === worker && this.end(error))

@@ -5,7 +5,7 @@ declare module 'virtual:moorage-kernel' {
   export default base64
 }
 declare module 'virtual:moorage-examiner' {
-  /** file: URL of the examining thread's script. */
-  const url: string
+  /** file: URL of the examining thread's script; known once the server has started. */
+  const url: () => URL
   export default url
 }

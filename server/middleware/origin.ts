@@ -5,9 +5,9 @@ const READING = new Set(['GET', 'HEAD', 'OPTIONS'])
 
 export default defineEventHandler((event) => {
   const { pathname } = getRequestURL(event)
-  if (!pathname.startsWith('/api/')) return
-  // The session module's own addresses are not part of the interface.
-  if (pathname.startsWith('/api/_auth/')) throw problem('not_found')
+  if (!/^\/api(\/|$)/.test(pathname)) return
+  // The session module's own addresses are not part of the interface, and nothing stands at its root.
+  if (/^\/api\/?$/.test(pathname) || pathname.startsWith('/api/_auth/')) throw problem('not_found')
   setResponseHeader(event, 'cache-control', 'no-store')
   if (READING.has(event.method)) return
   // Browsers set Sec-Fetch-Site themselves and let no page change it; where it is missing, Origin must name this host.
