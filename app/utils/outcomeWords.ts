@@ -1,7 +1,7 @@
 /** The sentences of an outcome: finding first, interval, then the reason. */
 import type { Outcome, OutcomeClass } from '#shared/schemas/outcome'
 import { stepSeconds, type Scenario } from '#shared/schemas/scenario'
-import { type NumberStyle, formatInterval, formatNumber, formatQuantity, formatTime, formatWithError } from '#shared/units'
+import { type NumberStyle, formatForField, formatInterval, formatNumber, formatQuantity, formatTime, formatWithError } from '#shared/units'
 import type { SentencePart } from './sentenceParts'
 
 type Reason = Outcome['agreement']['reason']
@@ -13,6 +13,9 @@ const REASON_WORDS: Record<Reason, string> = {
   'discrete-step': '; what little differs comes from the length of a step',
   'too-few': '',
 }
+/** A number that a person typed, as typed; and a time span of the schedule. */
+export const typedNumber = (value: number, style: NumberStyle = {}) => formatForField(Number(value.toPrecision(6)), style.decimal)
+export const typedTime = (seconds: number, style: NumberStyle = {}) => `${typedNumber(seconds, style)}\u00A0s`
 const ratioText = (value: number, style: NumberStyle) => formatNumber(value, { ...style, significant: value >= 10 ? 3 : value >= 1 ? 3 : 2 })
 
 function interval(ratio: Outcome['ratio'], style: NumberStyle, name = '95 % interval '): string {
@@ -71,7 +74,7 @@ export function outcomeNumbers(outcome: Outcome, style: NumberStyle = {}): Sente
   ])
   const end = outcome.timesS.at(-1) ?? 0
   const empty = `${formatNumber(outcome.tau.unfilledShare * 100, { ...style, significant: 2 })} %`
-  return [...parts, { text: `. At ${formatTime(end, style)}, ${outcome.tau.unfilledShare === 0 ? 'no site is empty' : `${empty} of the sites are still empty`}.` }]
+  return [...parts, { text: `. At ${typedTime(Number(end.toPrecision(4)), style)}, ${outcome.tau.unfilledShare === 0 ? 'no site is empty' : `${empty} of the sites are still empty`}.` }]
 }
 
 /** So far: the head of a run under way. */
@@ -94,7 +97,7 @@ function ribbonWords({ ribbon }: Scenario): string {
 /** One sentence for a methods section, with every number that a reader needs to walk it again. */
 export function outcomeMethods(scenario: Scenario, outcome: Outcome, revision: number | null, style: NumberStyle = {}): string {
   const { medium, schedule, sites } = scenario
-  const number = (value: number) => formatNumber(value, { ...style, significant: 3 })
+  const number = (value: number) => typedNumber(value, style)
   const kinds = outcome.classes.filter(kind => kind.sites > 0)
   const attach = kinds.map(kind => `${number(kind.attachProbability)} at ${kind.sites}${kinds.length > 1 ? ` ${kind.name}` : ''} sites`).join(' and ')
   const extra = [
