@@ -54,9 +54,14 @@ export function below(n: u32): u32 {
 export function chance(p: f64): bool {
   if (p >= 1) return true
   if (p <= 0) return false
-  const scaled = p * 4294967296, whole = floor(scaled)
-  const limit = <u32>whole, r = next()
-  return r == limit ? next() < <u32>((scaled - whole) * 4294967296) : r < limit
+  const limit = <u32>(p * 4294967296), r = next()
+  return r == limit ? chanceLeft(p) : r < limit
+}
+
+/** The second draw of `chance`, where the first equals the threshold: the next 32 bits of p decide. */
+export function chanceLeft(p: f64): bool {
+  const scaled = p * 4294967296
+  return next() < <u32>((scaled - floor(scaled)) * 4294967296)
 }
 
 /** One draw from a table of counts. */
