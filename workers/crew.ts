@@ -56,6 +56,7 @@ export function createCrew({ createWorker, size, idleMs = 30_000 }: CrewOptions)
     },
     preview: (scenario, replicates, onGrowth) => previewer.preview(scenario, replicates, onGrowth),
     conclude: (scenario, result) => apart.conclude(scenario, result),
+    exact: scenario => apart.exact(scenario),
     dismiss() {
       clearTimeout(idle)
       for (const member of [...members, apart]) member.end('dismissed')

@@ -86,4 +86,8 @@ export class Member {
   conclude(...input: Parameters<Walker['conclude']>): ReturnType<Remote<Walker>['conclude']> {
     return this.ask(walker => walker.conclude(...input), 120_000)
   }
+
+  exact(...input: Parameters<Walker['exact']>): ReturnType<Remote<Walker>['exact']> {
+    return this.ask(walker => walker.exact(...input), 120_000)
+  }
 }

@@ -42,7 +42,11 @@ export interface Walker {
   walk(from: number, to: number): ReplicateBlock
   /** Makes the outcome document away from the page's own thread. */
   conclude(scenario: Scenario, result: RunResult): Outcome
+  /** The exact refill of an isolated site; null where only a walk tells. */
+  exact(scenario: Scenario): ExactRefill | null
 }
+/** Mean filled sites at the plan's sample times and the time constant that a walk's τ tends to. */
+export interface ExactRefill { timesS: number[], filled: number[], tauS: number | null }
 export interface WalkJob { scenario: Scenario, algorithm: Algorithm, seed: string }
 export interface WalkReady { version: string, tableBytes: number, landingError: number, prepareMs: number }
 export interface RunProgress {
@@ -73,6 +77,8 @@ export interface Crew {
   preview(scenario: Scenario, replicates: number, onGrowth?: (result: RunResult) => void): Promise<RunResult | null>
   /** The outcome document of a result, made in a worker. */
   conclude(scenario: Scenario, result: RunResult): Promise<Outcome>
+  /** The exact refill of an isolated site, solved in a worker; null where only a walk tells. */
+  exact(scenario: Scenario): Promise<ExactRefill | null>
   /** Measured over estimated time per replicate on this machine, for `estimateCost`; 1 before the first run. */
   readonly pace: number
   /** Ends all workers. */

@@ -1,4 +1,5 @@
 /** What a worker does, whatever starts it: compiles a plan, prepares the kernel, walks ranges, makes outcomes. */
+import { exactIsolatedFilled, notExactBecause } from '../shared/kinetics/isolated'
 import { scenarioDigest } from '../shared/walk/digest'
 import { buildOutcome } from '../shared/walk/outcome'
 import { compilePlan } from '../shared/walk/plan'
@@ -47,6 +48,12 @@ export function createWalker(load: () => Promise<WebAssembly.Module | BufferSour
     },
     conclude(scenario, { seed, engine, blocks, partial, landingError }) {
       return buildOutcome({ scenario, seed, engine, blocks, partial, landingError })
+    },
+    exact(scenario) {
+      if (notExactBecause(scenario) !== null) return null
+      const plan = compilePlan(scenario)
+      const found = exactIsolatedFilled(scenario, plan)
+      return found && { timesS: Array.from(plan.sampleSteps, step => step * plan.stepS), filled: found.filled, tauS: found.tauS }
     },
   }
 }

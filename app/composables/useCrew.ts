@@ -14,6 +14,7 @@ export const useCrew = (): Crew => ({
   run: (order, options) => made().run(order, options),
   preview: (scenario, replicates, onGrowth) => made().preview(scenario, replicates, onGrowth),
   conclude: (scenario, result) => made().conclude(scenario, result),
+  exact: scenario => made().exact(scenario),
   dismiss() {
     crew?.dismiss()
     crew = undefined

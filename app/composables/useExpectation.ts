@@ -3,8 +3,10 @@ import { closedForm } from '#shared/kinetics/closed-form'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
 import { previewRefusal } from '#shared/walk/cost'
-import type { RunResult } from '~~/workers/protocol'
+import { notExactBecause } from '#shared/kinetics/isolated'
+import type { ExactRefill, RunResult } from '~~/workers/protocol'
 import { closedFormSeries, walkSeries } from '~/utils/expectedCurves'
+import type { FigureSeries } from '~/utils/figureSeries'
 
 export type PreviewState = 'walking' | 'drawn' | 'too-large' | 'failed'
 /** Enough for a mean to about ±0.01 of the sites, few enough to follow the typing. */
@@ -17,6 +19,8 @@ const SETTLE_MS = 25
 export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonly<Ref<Scenario | null>>) {
   const crew = useCrew()
   const preview = shallowRef<Outcome | null>(null)
+  /** The exact refill of an isolated site: drawn instead of trusting a noisy walk, which stands beside it. */
+  const exact = shallowRef<ExactRefill | null>(null)
   const previewState = shallowRef<PreviewState>('walking')
   const previewReason = shallowRef('')
   const formula = computed(() => closedForm(scenario.value))
@@ -24,8 +28,14 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
   const sites = computed(() => formula.value.classes.reduce((sum, one) => sum + one.sites, 0))
 
   let asked = 0
+  async function solve(one: Scenario, mine: number) {
+    if (notExactBecause(one) !== null) return void (exact.value = null)
+    const found = await crew.exact(one).catch(() => null)
+    if (mine === asked) exact.value = found
+  }
   async function walk(one: Scenario) {
     const mine = ++asked
+    void solve(one, mine)
     const refusal = previewRefusal(one, MOST_SECONDS, crew.pace)
     if (refusal) {
       preview.value = null
@@ -60,9 +70,12 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
     const before = saved.value && savedFormula.value
       ? [closedFormSeries(saved.value, savedFormula.value.classes.reduce((sum, one) => sum + one.sites, 0), 'earlier', 'Closed form, saved revision')]
       : []
+    const solved: FigureSeries[] = exact.value
+      ? [{ id: 'exact', kind: 'other', label: 'Exact, one site', note: 'linear solution, no noise', times: exact.value.timesS, values: exact.value.filled }]
+      : []
     const walked = preview.value ? [walkSeries(preview.value, 'preview', `Preview walk, ${preview.value.replicates} replicates`)] : []
-    return [...before, closedFormSeries(scenario.value, sites.value, 'closed-form', 'Closed form'), ...walked]
+    return [...before, closedFormSeries(scenario.value, sites.value, 'closed-form', 'Closed form'), ...solved, ...walked]
   })
-  return { formula, savedFormula, sites, series, preview: readonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
+  return { formula, savedFormula, sites, series, exact: readonly(exact), preview: readonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
 }
 export type Expectation = ReturnType<typeof useExpectation>

@@ -1,7 +1,7 @@
 /** The text of one quantity field: kept as typed, read at every key, set in order when it is committed. */
 import { convert, formatForField, parseQuantity, percentHint, type UnitSymbol } from '#shared/units'
 
-export interface QuantityLimits { min?: number, max?: number, /** Above `min`, not at it. */ aboveMin?: boolean, whole?: boolean, what?: string }
+export interface QuantityLimits { min?: number, max?: number, /** Above `min`, not at it. */ aboveMin?: boolean, whole?: boolean, what?: string, /** The question for a value that looks like a slip of the unit. */ slip?: (value: number) => { sentence: string } | null }
 export interface QuantityChoice { value: number, shown: string }
 export interface QuantityReading { value?: number, problem?: string, choices?: readonly QuantityChoice[] }
 
@@ -28,6 +28,8 @@ function limitProblem(value: number, shownUnit: UnitSymbol, storedUnit: UnitSymb
   const unit = shownUnit === '1' || shownUnit === 'count' ? '' : ` ${shownUnit}`
   const from = limits.aboveMin ? `above ${say(min)}` : say(min)
   const allowed = limits.what ?? (max === Infinity ? `Allowed: ${limits.aboveMin ? '' : 'at least '}${from}${unit}.` : `Allowed: ${from} to ${say(max)}${unit}.`)
+  const slip = limits.slip?.(value)
+  if (slip) return `${allowed} ${slip.sentence}`
   const percent = max === 1 ? percentHint(value) : null
   return percent ? `${allowed} If you mean ${formatForField(value, decimal)} %, type ${formatForField(percent.value, decimal)}.` : allowed
 }
