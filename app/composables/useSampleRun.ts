@@ -2,11 +2,8 @@
 import { SAMPLE_SEED } from '#shared/almanac/demo-scenarios'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
-import { buildOutcome } from '#shared/walk/outcome'
 
 export const SAMPLE_REPLICATES = 200
-/** A growing curve is drawn again at most this often [ms]. */
-const REDRAW_MS = 250
 
 export interface SampleWalk { scenario: Scenario, outcome: Outcome, durationMs: number, workers: number, done: boolean }
 
@@ -23,18 +20,16 @@ export function useSampleRun() {
     const own = abort = new AbortController()
     status.value = 'running'
     replicatesDone.value = progress.value = 0
-    let drawnAt = performance.now()
     try {
       const result = await crew.run({ scenario, seed: SAMPLE_SEED, replicates: SAMPLE_REPLICATES, algorithm: 'auto' }, {
         signal: own.signal,
         onProgress: (now) => {
           replicatesDone.value = now.replicatesDone
           progress.value = now.replicatesDone / now.replicates
-          if (performance.now() - drawnAt > REDRAW_MS) drawnAt = performance.now()
         },
       })
       if (result.blocks.length > 0) {
-        const outcome = buildOutcome({ scenario, seed: result.seed, engine: result.engine, blocks: result.blocks, partial: result.partial, landingError: result.landingError })
+        const outcome = await crew.conclude(scenario, result)
         walk.value = { scenario, outcome, durationMs: result.durationMs, workers: result.workers, done: !result.partial }
       }
       status.value = result.partial ? 'stopped' : 'done'
