@@ -11,6 +11,9 @@ import type { Desk } from '~/composables/useOutcomeDesk'
 /** A partial outcome is made at most this often [ms], and takes at most a fifth of the time between two. */
 const PARTIAL_EVERY_MS = 800
 
+/** An error from fewer replicates than these is a guess. */
+const FEWEST = 5
+
 /** Only the per-replicate rows from a replicate on: what the Monte Carlo error reads. */
 function rowsFrom(block: ReplicateBlock, from: number): ReplicateBlock {
   const cut = (rows: number[][]) => rows.map(row => row.slice(from - block.from))
@@ -39,13 +42,18 @@ class WalkBooks {
     this.measure(all)
   }
 
-  /** The final blocks: a run with a target groups them anew, so the desk's books are opened again. */
+  /** The final blocks. A run with a target groups them anew; then the desk's books are opened again, which digests every block once more. */
   conclude(blocks: ReplicateBlock[]): void {
     const { localId, asked } = this.run
+    const grown = this.blocks.every((block, i) => blocks[i]?.from === block.from && blocks[i]?.to === block.to)
+    const fresh = grown ? blocks.slice(this.blocks.length) : blocks
+    if (!grown) this.pending = this.pending.then(() => this.desk.open(localId, asked.scenario, asked.seed))
+    if (fresh.length > 0) this.pending = this.pending.then(() => this.desk.add(localId, fresh))
     this.blocks = blocks
     this.tail = undefined
-    this.pending = this.pending.then(() => this.desk.open(localId, asked.scenario, asked.seed)).then(() => this.desk.add(localId, blocks))
     this.measure(blocks)
+    const end = blocks.at(-1)?.to ?? 0
+    this.run.precision = this.run.precision.filter(point => point.replicates <= end)
   }
 
   /** After a fault: what there was counts. */
@@ -59,7 +67,7 @@ class WalkBooks {
     for (const block of all) if (block.to > this.read) this.precision.add(rowsFrom(block, Math.max(block.from, this.read)))
     this.read = end
     const found = this.precision.read()
-    if (found) this.run.precision = [...this.run.precision, { replicates: found.replicates, standardError: found.standardError }]
+    if (found && found.replicates >= FEWEST) this.run.precision = [...this.run.precision, { replicates: found.replicates, standardError: found.standardError }]
   }
 
   /** Nothing is on its way to the desk any more. */

@@ -10,7 +10,15 @@ export interface FigureDifference {
   largest: { timeS: number, value: number, halfWidth: number | null } | null
 }
 
-/** At the samples of the first curve that the second reaches. The second carries no error of its own when it is a formula. */
+/** Half of a curve's interval at a time; 0 for a formula, which has none. */
+function halfAt(series: FigureSeries, timeS: number): number {
+  if (!series.inner) return 0
+  const low = curveValueAt(series.times, series.inner.low, timeS)
+  const high = curveValueAt(series.times, series.inner.high, timeS)
+  return low === null || high === null ? 0 : (high - low) / 2
+}
+
+/** At the samples of the first curve that the second reaches. Half widths of two independent walks add as squares. */
 export function differenceOf(first: FigureSeries, second: FigureSeries): FigureDifference {
   const times: number[] = []
   const values: number[] = []
@@ -24,12 +32,13 @@ export function differenceOf(first: FigureSeries, second: FigureSeries): FigureD
     const value = (own - other) * 100
     times.push(timeS)
     values.push(value)
+    const half = second.inner ? Math.hypot(halfAt(first, timeS), halfAt(second, timeS)) * 100 : null
     if (first.inner) {
-      low.push((first.inner.low[i]! - other) * 100)
-      high.push((first.inner.high[i]! - other) * 100)
+      low.push(half === null ? (first.inner.low[i]! - other) * 100 : value - half)
+      high.push(half === null ? (first.inner.high[i]! - other) * 100 : value + half)
     }
     if (!largest || Math.abs(value) > Math.abs(largest.value))
-      largest = { timeS, value, halfWidth: first.inner ? (first.inner.high[i]! - first.inner.low[i]!) * 50 : null }
+      largest = { timeS, value, halfWidth: first.inner ? half ?? (first.inner.high[i]! - first.inner.low[i]!) * 50 : null }
   })
   return { times, values, low: first.inner ? low : null, high: first.inner ? high : null, largest }
 }

@@ -11,7 +11,7 @@ export interface FigureOptions {
   scale: TimeScale
   series: readonly FigureSeries[]
   /** Ids of the curves whose difference the strip shows. */
-  difference?: { of: string, minus: string } | null
+  difference?: { of: string, minus: string, title?: string } | null
   /** Height of the frame [px]; by default for the width. */
   frameHeight?: number
 }
@@ -88,7 +88,7 @@ function strip(options: FigureOptions, axis: TimeAxis, frame: Box): DifferenceLa
   const points = drawnPoints(difference.times, difference.values, axis.fromS, axis.toS, axis.place)
   const text = gapWords(difference)
   return {
-    axis: values, frame, difference, title: `${first.label.split(',')[0]} − ${second.label.split(',')[0]!.toLowerCase()} (percentage points)`,
+    axis: values, frame, difference, title: options.difference?.title ?? `${first.label.split(',')[0]} − ${second.label.split(',')[0]!.toLowerCase()} (percentage points)`,
     band: difference.low && difference.high ? bandPath(difference.times, { low: difference.low, high: difference.high }, axis, axis.place, values.place) : null,
     path: path(points, axis.place, values.place),
     gap: text && difference.largest && axis.place(axis.toS) > 500 ? gapPlace(`Largest gap ${text}`, difference.largest.timeS, difference.largest.value, axis, frame) : null,

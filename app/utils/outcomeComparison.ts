@@ -1,7 +1,6 @@
 /** Why two outcomes differ, and by how much: revision fields, engine, seed, replicates, and the ratio with its interval. */
 import { scenarioDifferences, valueWords } from '#shared/schemas/differences'
 import type { OutcomeSubject } from './outcomeSubject'
-import { subjectName } from './outcomeSubject'
 import { stepCheck, type StepCheck } from './stepCheck'
 
 export interface ComparedField { name: string, values: string[], differs: boolean }
@@ -35,7 +34,7 @@ const CAUSES: Record<Cause, string> = {
 }
 const RESOLVED = (check: StepCheck | null) => check === null
   ? ' One of the two has no interval, so their ratios cannot be compared.'
-  : check.agree ? ' The difference of their ratios is within its 95 % interval.' : ' The difference of their ratios is beyond its 95 % interval.'
+  : check.agree ? ' The difference of their ratios is within its 95\u00A0% interval.' : ' The difference of their ratios is beyond its 95\u00A0% interval.'
 
 function runFields(subjects: readonly OutcomeSubject[]): ComparedField[] {
   const row = (name: string, read: (subject: OutcomeSubject) => string) => {
@@ -65,16 +64,16 @@ function scenarioFields(subjects: readonly OutcomeSubject[]): ComparedField[] {
   }))
 }
 
-/** Compares outcomes against the first of them. */
-export function compareOutcomes(subjects: readonly OutcomeSubject[]): Comparison {
+/** Compares outcomes against the first of them; `names` as the page calls them. */
+export function compareOutcomes(subjects: readonly OutcomeSubject[], names: readonly string[]): Comparison {
   const [first, ...others] = subjects
   if (!first) return { fields: [], against: [] }
   return {
     fields: [...scenarioFields(subjects), ...runFields(subjects).filter(field => field.differs)],
-    against: others.map((other) => {
+    against: others.map((other, i) => {
       const check = stepCheck(first.outcome, other.outcome)
       const cause = causeOf(first, other)
-      return { name: subjectName(other), check, cause, sentence: CAUSES[cause] + (cause === 'identical' ? '' : RESOLVED(check)) }
+      return { name: names[i + 1] ?? '', check, cause, sentence: CAUSES[cause] + (cause === 'identical' ? '' : RESOLVED(check)) }
     }),
   }
 }

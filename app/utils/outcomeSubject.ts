@@ -37,5 +37,9 @@ export function subjectOfLocal(run: LocalRun): OutcomeSubject | null {
     replicatesAsked: asked.replicates, durationMs: run.durationMs, workers: run.workers, who: null, at: run.finishedAt ?? run.startedAt, audit: null,
   }
 }
-/** `Run 14` on the bench, `a run on this device` else. */
-export const subjectName = (subject: OutcomeSubject) => subject.number === null ? 'a run on this device' : `Run ${subject.number}`
+/** Names by which several outcomes can be told apart: `Run 14`; those on this device by title, and by seed where titles are equal. */
+export function subjectNames(subjects: readonly OutcomeSubject[]): string[] {
+  const short = (text: string, most: number) => text.length > most ? `${text.slice(0, most - 1)}…` : text
+  const plain = subjects.map(subject => subject.number === null ? `“${short(subject.title, 28)}” here` : `Run ${subject.number}`)
+  return plain.map((name, i) => plain.filter(other => other === name).length > 1 ? `${name}, seed ${short(subjects[i]!.outcome.seed, 14)}, ${subjects[i]!.outcome.replicates} replicates` : name)
+}

@@ -18,7 +18,7 @@ export const typedNumber = (value: number, style: NumberStyle = {}) => formatFor
 export const typedTime = (seconds: number, style: NumberStyle = {}) => `${typedNumber(seconds, style)}\u00A0s`
 const ratioText = (value: number, style: NumberStyle) => formatNumber(value, { ...style, significant: value >= 10 ? 3 : value >= 1 ? 3 : 2 })
 
-function interval(ratio: Outcome['ratio'], style: NumberStyle, name = '95 % interval '): string {
+function interval(ratio: Outcome['ratio'], style: NumberStyle, name = '95\u00A0% interval '): string {
   return ratio.low === null || ratio.high === null ? '(no interval)' : `(${name}${formatInterval(ratio.low, ratio.high, style)})`
 }
 
@@ -77,9 +77,15 @@ export function outcomeNumbers(outcome: Outcome, style: NumberStyle = {}): Sente
   return [...parts, { text: `. At ${typedTime(Number(end.toPrecision(4)), style)}, ${outcome.tau.unfilledShare === 0 ? 'no site is empty' : `${empty} of the sites are still empty`}.` }]
 }
 
+/** Time left as people say it: seconds, from two minutes on minutes, from two hours on hours. */
+function leftWords(seconds: number): string {
+  if (seconds < 120) return `${Math.max(1, Math.round(seconds))}\u00A0s`
+  return seconds < 7200 ? `${Math.round(seconds / 60)}\u00A0min` : `${Math.round(seconds / 3600)}\u00A0h`
+}
+
 /** So far: the head of a run under way. */
 export function soFarSentence(done: number, wanted: number, remainingMs: number | null, outcome: Outcome | null, style: NumberStyle = {}): SentencePart[] {
-  const left = remainingMs === null ? '' : `, about ${formatTime(Math.max(1, Math.round(remainingMs / 1000)), { ...style, significant: 2 })} left`
+  const left = remainingMs === null ? '' : `, about ${leftWords(remainingMs / 1000)} left`
   const head: SentencePart[] = [{ text: `${formatQuantity(done, 'count')} of ${formatQuantity(wanted, 'count')}`, strong: true }, { text: ` replicates done${left}. ` }]
   if (!outcome || outcome.ratio.value === null) return [...head, { text: 'The first numbers come with the first replicates.' }]
   return [...head, { text: `So far the walk takes ${ratioText(outcome.ratio.value, style)} times as long as the closed form ` }, { text: interval(outcome.ratio, style, ''), quiet: true }, { text: '.' }]
@@ -106,7 +112,7 @@ export function outcomeMethods(scenario: Scenario, outcome: Outcome, revision: n
   ].filter(Boolean)
   return `Refill of ${ribbonWords(scenario)} was simulated with Moorage (engine ${outcome.engine.algorithm} ${outcome.engine.version}): vesicles of ${number(medium.spacingNm)} nm at ${number(medium.densityPerUm3)} per µm³ with D ${number(medium.diffusionUm2PerS)} µm²/s, `
     + `${SUPPLY[scenario.reservoir.supply]}${extra.length > 0 ? `, ${extra.join(', ')}` : ''}; attachment per hit ${attach}; ${number(1 - schedule.initialFill)} of the sites emptied; `
-    + `${outcome.replicates} replicates${outcome.partial ? ' (partial)' : ''}, seed ‘${outcome.seed}’, lattice step ${formatTime(stepSeconds(medium), style)}, scenario ${outcome.scenarioDigest.slice(0, 12)}${revision === null ? '' : ` (revision ${revision})`}, outcome ${outcome.digest.slice(0, 12)}; intervals are 95 %, from whole replicates.`
+    + `${outcome.replicates} replicates${outcome.partial ? ' (partial)' : ''}, seed ‘${outcome.seed}’, lattice step ${formatTime(stepSeconds(medium), style)}, scenario ${outcome.scenarioDigest.slice(0, 12)}${revision === null ? '' : ` (revision ${revision})`}, outcome ${outcome.digest.slice(0, 12)}; intervals are 95\u00A0%, from whole replicates.`
 }
 
 /** `p = 0.31` or `p < 10^−6`. */

@@ -67,7 +67,7 @@ function barOf(scale: number, spacingNm: number): SectionLayout['bar'] {
 
 /** The picture for a width [px]; without a density the contours are left out. */
 export function laySection(place: ScenePlace, frame: SceneFrame, section: DensitySection | null, row: number, width: number): SectionLayout {
-  const height = Math.round(width * 0.75)
+  const height = Math.round(Math.min(width * 0.75, 340))
   const view = viewOf(place, width, height)
   const { scale } = view
   const x = (at: number) => view.offsetX + (at - view.left) * scale
