@@ -87,7 +87,7 @@ export class Member {
     return this.ask(walker => walker.conclude(...input), 120_000)
   }
 
-  exact(...input: Parameters<Walker['exact']>): ReturnType<Remote<Walker>['exact']> {
-    return this.ask(walker => walker.exact(...input), 120_000)
+  exact(...input: Parameters<Walker['exact']>): Promise<ReturnType<Walker['exact']>> {
+    return this.ask(walker => walker.exact(...input) as Promise<ReturnType<Walker['exact']>>, 120_000)
   }
 }

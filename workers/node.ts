@@ -2,6 +2,7 @@
 import { readFileSync } from 'node:fs'
 import { Worker } from 'node:worker_threads'
 import { nodeEndpoint } from './node-endpoint'
+import { threadScript } from './node-script'
 import type { Scenario } from '../shared/schemas/scenario'
 import type { EngineId, ReplicateBlock } from '../shared/walk/types'
 import { createCrew, crewSize } from './crew'
@@ -15,9 +16,9 @@ export { createCrew, crewSize }
 /** Bytes of the committed kernel, for callers that run from the source tree. */
 export const kernelFromSource = (): Uint8Array<ArrayBuffer> => new Uint8Array(readFileSync(new URL('./kernel/kernel.wasm', import.meta.url)))
 
-/** A worker thread running this source tree's script; TypeScript is loaded by tsx. */
+/** A worker thread running this source tree's script. */
 export function threadFromSource(kernelBytes = kernelFromSource()): WorkerHandle {
-  return threadHandle(new Worker(new URL('./node-worker.mjs', import.meta.url), { workerData: { kernelBytes } }))
+  return threadHandle(new Worker(threadScript(), { eval: true, workerData: { kernelBytes } }))
 }
 
 /** Wraps a started thread for a crew. */

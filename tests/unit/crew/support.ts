@@ -9,9 +9,9 @@ import { smallScenario } from '../outcome/walked'
 
 const kernelBytes = kernelFromSource()
 
-/** A walk of the step kernel, about 10 ms a replicate. */
+/** A walk of the step kernel, a few milliseconds a replicate. */
 export const heldScenario = smallScenario({
-  reservoir: { supply: 'held', marginSites: 10 }, schedule: { durationS: 6, sampleEveryMs: 100 },
+  reservoir: { supply: 'held', marginSites: 10 }, schedule: { durationS: 3, sampleEveryMs: 100 },
   sites: [{ name: 'a', share: 0.5, attachProbability: 0.6 }, { name: 'b', share: 0.5, attachProbability: 0.05 }],
 })
 
