@@ -1,11 +1,13 @@
 /** The landing law: one solve per class of starts in the box near the ribbon, binned by waiting time. */
 import { placeBox } from './attempt-tables'
+import { lateLaws, type LateLaws } from './attempt-late'
 import { returnsOf, type RibbonBox } from './attempt-boxes'
 import { attemptExports, type Scratch } from './attempt-kernel'
 import { likenesses, orderFrom, type Starts } from './attempt-starts'
 import type { KernelHost } from './host'
 
 export interface LandingRows {
+  /** First step of the last bin, and bins in all. */
   steps: number
   bins: number
   binOf: Uint8Array
@@ -28,8 +30,9 @@ export interface LandingTask {
   whole: boolean
 }
 
-/** Word and f64 places of the fields of LandingSolve that change from class to class. */
-const FIELD = { start: 1, waits: 9, solved: 12, made: 17, lateOdd: 80, error: 96 } as const
+/** Word and byte places of the fields of LandingSolve that change from class to class. */
+const FIELD = { start: 1, waits: 9, solved: 12, made: 20, error: 96 } as const
+const WORDS = 21
 
 function binOfSteps(ends: number[]): Uint8Array {
   const bins = new Uint8Array(ends[ends.length - 1]! + 1)
@@ -41,9 +44,8 @@ function binOfSteps(ends: number[]): Uint8Array {
   return bins
 }
 
-/** Error per jump of landings that come from outside the near box or after the last bin's steps, relative to their mass; measured by full solves (tests/unit/attempt). */
-const FAR_ERROR = 0.02
-const LATE_ERROR = 0.004
+/** Error per jump of landings from outside the near box, relative to their mass; and of late landings, relative to what is left of the start's own difference. Held against full solves by tests/unit/attempt. */
+const RELATIVE_ERROR = { far: 0.01, late: 0.55 } as const
 
 /** One class after another; mirror images of a solved class follow it at once and share its solve. */
 class LandingSolver {
@@ -52,23 +54,27 @@ class LandingSolver {
   private readonly ranked: number
   private readonly cells: number
   private readonly lengths: number
+  private readonly lateLaws: number
+  private readonly rows: number
   private readonly far: Float64Array | null
   private readonly steps: number
   error = 0
 
-  constructor(private readonly host: KernelHost, scratch: Scratch, private readonly near: RibbonBox, private readonly task: LandingTask, binOf: Uint8Array) {
+  constructor(private readonly host: KernelHost, scratch: Scratch, private readonly near: RibbonBox, private readonly task: LandingTask, private readonly late: LateLaws, binOf: Uint8Array) {
     const { ends, attemptChance, mobility, waits } = task, sites = near.fronts.length, bins = ends.length
     this.steps = ends[bins - 1]!
     this.frontsOfRank = scratch.place(Int32Array.from(near.fronts))
     this.ranked = scratch.room(8 * sites)
-    this.cells = scratch.room(8 * bins * sites)
-    this.lengths = scratch.room(8 * bins)
-    const laws = scratch.room(4 * this.steps * sites), sums = scratch.room(16 * bins * sites)
+    this.rows = 2 * (bins + late.ends.length)
+    this.cells = scratch.room(4 * this.rows * sites)
+    this.lengths = scratch.room(4 * this.rows)
+    this.lateLaws = scratch.room(8 * late.laws.length)
+    const laws = scratch.room(4 * this.steps * sites), sums = scratch.room(8 * this.rows * sites)
     this.job = scratch.words([
       placeBox(host, scratch, near, near.holes, returnsOf(near, attemptChance), mobility), 0, this.frontsOfRank, sites, this.steps, scratch.place(binOf), bins,
       laws, sums, 0, 4 * task.starts.count, waits.steps, 0, task.whole ? 0 : this.ranked,
-      this.cells, this.lengths, scratch.room(16 * sites), 0,
-      { double: attemptChance / 6 * mobility }, { double: 0 }, { double: 0 }, { double: 0 }, { double: 0 }, { double: 0 },
+      this.cells, this.lengths, this.lateLaws, scratch.place(late.shares), late.ends.length, scratch.room(16 * sites), 0,
+      { double: attemptChance / 6 * mobility }, { double: 0 }, { double: 0 }, { double: 0 }, { double: 0 },
     ])
     this.far = task.whole ? null : this.solveFar(scratch.room(8 * sites), sites)
   }
@@ -80,18 +86,19 @@ class LandingSolver {
 
   /** Rows of one class; `solved` when the last solve was that of its mirror image. */
   rowsOf(kind: number, order: number[], solved: boolean): { lengths: Uint32Array, cells: Uint32Array } {
-    const { host, job, task, near } = this, { waits } = task
+    const { host, job, task, near, late } = this, { waits } = task
     host.words(this.frontsOfRank, order.length).set(order.map(site => near.fronts[site]!))
     if (this.far) host.doubles(this.ranked, order.length).set(order.map(site => this.far![site]!))
-    const words = host.words(job, 18), [first, second] = waits.tails.subarray(3 * kind, 3 * kind + 2)
+    const laws = host.doubles(this.lateLaws, late.laws.length), count = order.length
+    for (let row = 0; row < late.laws.length; row += count) order.forEach((site, rank) => laws[row + rank] = late.laws[row + site]!)
+    const words = host.words(job, WORDS)
     words[FIELD.start] = near.fronts[order[0]!]!
     words[FIELD.waits] = waits.pointer + 4 * kind
     words[FIELD.solved] = solved ? 1 : 0
-    host.doubles(job + FIELD.lateOdd, 2).set(waits.steps % 2 === 0 ? [first!, second!] : [second!, first!])
     attemptExports(host).solveLandings(job)
-    const [error, farMass, lateMass] = host.doubles(job + FIELD.error, 3)
-    this.error = Math.max(this.error, error! + FAR_ERROR * farMass! + LATE_ERROR * lateMass!)
-    return { lengths: host.words(this.lengths, 2 * task.ends.length).slice(), cells: host.words(this.cells, host.words(job, 18)[FIELD.made]!).slice() }
+    const [error, far, later, difference] = host.doubles(job + FIELD.error, 4)
+    this.error = Math.max(this.error, error! + RELATIVE_ERROR.far * far! + RELATIVE_ERROR.late * later! * difference!)
+    return { lengths: host.words(this.lengths, this.rows).slice(), cells: host.words(this.cells, host.words(job, WORDS)[FIELD.made]!).slice() }
   }
 }
 
@@ -111,8 +118,9 @@ function join(parts: { lengths: Uint32Array, cells: Uint32Array }[], rowsPerClas
 
 /** Solves the landing laws of all classes and makes their rows. */
 export function landingRows(host: KernelHost, scratch: Scratch, near: RibbonBox, task: LandingTask): LandingRows {
-  const { starts, ends } = task, binOf = binOfSteps(ends), sites = near.fronts.length
-  const solver = new LandingSolver(host, scratch, near, task, binOf)
+  const { starts, ends } = task, sites = near.fronts.length, late = lateLaws(host, task, sites)
+  const binOf = binOfSteps([...ends, ...late.ends])
+  const solver = new LandingSolver(host, scratch, near, task, late, binOf)
   const { alike, images } = likenesses(near, starts)
   const parts: { lengths: Uint32Array, cells: Uint32Array }[] = [], order = new Uint16Array(starts.count * sites)
   for (let kind = 0; kind < starts.count; kind++) {
@@ -126,5 +134,5 @@ export function landingRows(host: KernelHost, scratch: Scratch, near: RibbonBox,
       order.set(around, other * sites)
     }
   }
-  return { steps: ends[ends.length - 1]!, bins: ends.length, binOf, order, error: solver.error, ...join(parts, 2 * ends.length) }
+  return { steps: binOf.length - 1, bins: ends.length + late.ends.length, binOf, order, error: solver.error, ...join(parts, 2 * (ends.length + late.ends.length)) }
 }

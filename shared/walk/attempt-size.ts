@@ -10,7 +10,7 @@ export const NEAR_MARGIN = 12
 /** Steps of the landing law of a vesicle that moves in every step [1]. */
 export const LANDING_STEPS = 256
 /** Widths of landing bins grow by this ratio [1]. */
-export const BIN_RATIO = 1.19
+export const BIN_RATIO = 1.12
 /** Longest explicit waiting time: outcomes are 16-bit [steps]. */
 export const WAIT_LIMIT = 65_000
 /** Longest run: base-256 digits of late times [steps]. */
@@ -36,6 +36,20 @@ export function landingBins(last: number): number[] {
     ends.push(Math.floor(end))
     if (end >= last) return ends
   }
+}
+
+/** Late bins, after the solved steps, grow by this ratio; there are four, and one for all that is later [1]. */
+const LATE_RATIO = 1.5
+const LATE_BINS = 4
+/**
+ * Upper ends of the late bins; the last one, a step long here, stands for all later waits.
+ * @param solved - end of the last solved bin [steps]
+ * @returns ends, ascending [steps]
+ */
+export function lateBins(solved: number): number[] {
+  const ends: number[] = []
+  for (let i = 0; i < LATE_BINS; i++) ends.push(Math.max(solved + i + 1, Math.round((ends[i - 1] ?? solved) * LATE_RATIO)))
+  return [...ends, ends[LATE_BINS - 1]! + 1]
 }
 
 /** s_max of a plan's mobility class: the largest attachment probability of its vesicles, up to 1, 1/2, 1/4, …, so that tables survive edits; 0 where none attaches. */
@@ -96,7 +110,7 @@ export function attemptTableBytes(plan: WalkPlan): number {
   return attemptMobilities(plan).reduce((bytes, mobility) => {
     const waits = classes * (estimateWaitSteps(plan, mobility) + 3) * 8
     // Short waits reach few sites: about a third of the full rows is never made.
-    const landings = classes * landingBins(landingSteps(mobility)).length * 2 * (sites * 4 + 8)
+    const landings = classes * (landingBins(landingSteps(mobility)).length + LATE_BINS + 1) * 2 * (sites * 4 + 8)
     return bytes + waits + landings + classes * sites * 2 + sites * 22 + 40_000
   }, 0)
 }

@@ -32,18 +32,20 @@ export class LandingSolve {
   /** Rows of cells made here, one after another, and their lengths (u32) [bin·2 + parity]. */
   cells: usize
   lengths: usize
+  /** Late bins after the solved ones: f64 [1 + late bin][parity][rank], the law from a uniform start in the last solved bin and in each late one, and f64 [late bin][parity], how much of the last solved bin's difference from it is left. */
+  lateLaws: usize
+  lateShares: usize
+  lateCount: i32
   /** 2·siteCount f64 of working room. */
   room: usize
   /** Cells made. */
   made: i32
   chance: f64
-  /** Waiting mass after the last of `waitSteps`, odd and even step. */
-  lateOdd: f64
-  lateEven: f64
-  /** Answers: error within bins, mass that comes from outside the box, mass later than the solve. */
+  /** Answers: error within bins, mass that comes from outside the box, later mass weighted by steps solved over step, and how far the last solved bin is from its uniform start's (total variation). */
   error: f64
   farMass: f64
   lateMass: f64
+  difference: f64
 }
 
 @inline
@@ -107,35 +109,51 @@ function binningError(job: LandingSolve): f64 {
   return difference / 2
 }
 
-/** Adds mass that lands as from far away to the row of a step. */
-function addFar(job: LandingSolve, step: i32, mass: f64): void {
-  const sums = job.sums + <usize>(rowOf(job, step) * job.siteCount) * 8
-  for (let rank = 0; rank < job.siteCount; rank++) {
-    const at = <usize>rank << 3
-    store<f64>(sums + at, load<f64>(sums + at) + mass * load<f64>(job.far + at))
+/** What the whole terminal's waiting law has above the box's came back from outside the box, and lands as from there. */
+function addFar(job: LandingSolve): void {
+  let far: f64 = 0
+  const last = min(job.waitSteps, job.steps)
+  for (let step = 1; job.far != 0 && step <= last; step++) {
+    let missing = waitAt(job, step)
+    const law = job.laws + <usize>((step - 1) * job.siteCount) * 4
+    for (let rank = 0; rank < job.siteCount; rank++) missing -= <f64>load<f32>(law + (<usize>rank << 2))
+    if (!(missing > 0)) continue
+    far += missing
+    const sums = job.sums + <usize>(rowOf(job, step) * job.siteCount) * 8
+    for (let rank = 0; rank < job.siteCount; rank++) {
+      const at = <usize>rank << 3
+      store<f64>(sums + at, load<f64>(sums + at) + missing * load<f64>(job.far + at))
+    }
   }
+  job.farMass = far
+  job.lateMass = 0
+  for (let step = job.steps + 1; step <= job.waitSteps; step++) job.lateMass += waitAt(job, step) * <f64>job.steps / <f64>step
 }
 
-/** What the whole terminal's waiting law has above the box's came back from outside the box. */
-function farPart(job: LandingSolve): void {
-  let late: f64 = job.lateOdd + job.lateEven
-  let far: f64 = 0
-  for (let step = 1; step <= job.waitSteps; step++) {
-    let missing = waitAt(job, step)
-    if (step > job.steps) late += missing
-    else {
-      const law = job.laws + <usize>((step - 1) * job.siteCount) * 4
-      for (let rank = 0; rank < job.siteCount; rank++) missing -= <f64>load<f32>(law + (<usize>rank << 2))
-      if (missing > 0) far += missing
+/** Late landings: the law from a uniform start, which is the waiting law read across sites, plus what is left of this start's own difference from it. */
+function addLate(job: LandingSolve): void {
+  const width = <usize>job.siteCount << 3
+  job.difference = 0
+  for (let parity = 0; parity < 2; parity++) {
+    const last = job.sums + <usize>(2 * (job.binCount - 1) + parity) * width
+    const uniform = job.lateLaws + <usize>parity * width
+    let total: f64 = 0
+    for (let rank = 0; rank < job.siteCount; rank++) total += load<f64>(last + (<usize>rank << 3))
+    let difference: f64 = 0
+    for (let rank = 0; rank < job.siteCount; rank++)
+      difference += total > 0 ? abs(load<f64>(last + (<usize>rank << 3)) / total - load<f64>(uniform + (<usize>rank << 3))) : 0
+    job.difference = max(job.difference, difference / 2)
+    for (let bin = 0; bin < job.lateCount; bin++) {
+      const share = total > 0 ? load<f64>(job.lateShares + (<usize>(2 * bin + parity) << 3)) / total : 0
+      const rest = total > 0 ? share * total : 0
+      const law = job.lateLaws + <usize>(2 * (bin + 1) + parity) * width
+      const sums = job.sums + <usize>(2 * (job.binCount + bin) + parity) * width
+      for (let rank = 0; rank < job.siteCount; rank++) {
+        const at = <usize>rank << 3
+        store<f64>(sums + at, max(0, load<f64>(law + at) + share * load<f64>(last + at) - rest * load<f64>(uniform + at)))
+      }
     }
-    if (job.far != 0 && missing > 0) addFar(job, step, missing)
   }
-  if (job.far != 0) {
-    addFar(job, job.steps + 1 - (job.steps & 1), job.lateOdd)
-    addFar(job, job.steps + (job.steps & 1), job.lateEven)
-  }
-  job.farMass = job.far != 0 ? far : 0
-  job.lateMass = late
 }
 
 /** Makes one row of cells; far ranks that hold next to nothing are left out. */
@@ -163,9 +181,10 @@ export function solveLandings(pointer: usize): void {
   if (job.solved == 0) forward(job)
   collect(job)
   job.error = binningError(job)
-  farPart(job)
+  addFar(job)
+  addLate(job)
   let made = 0
-  for (let row = 0; row < 2 * job.binCount; row++) {
+  for (let row = 0; row < 2 * (job.binCount + job.lateCount); row++) {
     const length = makeRow(job, row, job.cells + (<usize>made << 2))
     store<u32>(job.lengths + (<usize>row << 2), length)
     made += length
