@@ -5,8 +5,8 @@ import { FLAG, hopOffsets } from '../shared/walk/geometry'
 import type { WalkPlan } from '../shared/walk/types'
 import type { KernelHost } from './host'
 
-/** A plan in memory. `release` gives its memory back. */
-export interface PlacedPlan { pointer: number, release(): void }
+/** A plan in memory: about `bytes` of it; `release` gives it back. */
+export interface PlacedPlan { pointer: number, bytes: number, release(): void }
 
 const SUPPLY = { stirred: 0, held: 1, sealed: 2 } as const
 
@@ -95,11 +95,13 @@ export function placePlan(host: KernelHost, plan: WalkPlan): PlacedPlan {
   const pointer = host.allocate(bytes)
   host.doubles(pointer, doubles.length).set(doubles)
   host.words(pointer + doubles.length * 8, words.length).set(words)
-  return { pointer, release: () => [pointer, ...addresses].forEach(address => address !== 0 && host.release(address)) }
+  // 24 bytes a voxel for what lies behind its faces, 4 for the list of free ones, 2 for flags.
+  return { pointer, bytes: plan.flags.length * 30, release: () => [pointer, ...addresses].forEach(address => address !== 0 && host.release(address)) }
 }
 
-/** Plans kept in memory at a time: a person compares a few. */
+/** Plans kept in memory at a time (a person compares a few), and the bytes beyond which only the newest stays. */
 const KEPT_PLANS = 4
+const KEPT_BYTES = 64 * 1024 * 1024
 
 /** The placed plans of one kernel, oldest use first; an evicted plan is placed anew when it is walked again. */
 export class PlacedPlans {
@@ -112,7 +114,12 @@ export class PlacedPlans {
     const known = this.kept.findIndex(one => one.plan === plan)
     const entry = known < 0 ? { plan, placed: placePlan(this.host, plan) } : this.kept.splice(known, 1)[0]!
     this.kept.push(entry)
-    if (this.kept.length > KEPT_PLANS) this.kept.shift()!.placed.release()
+    let bytes = this.kept.reduce((sum, one) => sum + one.placed.bytes, 0)
+    while (this.kept.length > KEPT_PLANS || (this.kept.length > 1 && bytes > KEPT_BYTES)) {
+      const oldest = this.kept.shift()!.placed
+      bytes -= oldest.bytes
+      oldest.release()
+    }
     return entry.placed.pointer
   }
 }

@@ -30,12 +30,12 @@ describe('54 sites on a wall', () => {
   it.each([
     ['held', [12, 15, 8], 1.8623, 0.0017, 1500], ['held', [18, 21, 12], 1.88, 0.0021, 800], ['sealed', [24, 24, 24], 1.8887, 0.0038, 400],
   ] as const)('%s box of %s voxels: R = %s(%s)', (supply, box, reference, se, replicates) => {
-    const plan = planOf({ ...onFloor(9, 6, [...box]), supply, steps: longRun(1) })
+    const plan = planOf({ ...onFloor(6, 9, [...box]), supply, steps: longRun(1) })
     expect(distance(meanTime(walk(kernel, plan, 'step', 'wall', replicates), tauSteps(1)), reference, se)).toBeLessThan(4)
   })
   // Trial program, full walk with exclusion, 2,000 replicates each.
   it.each([['held', [18, 21, 12], 1.8001, 0.006, 500], ['sealed', [24, 24, 24], 1.8065, 0.0062, 250]] as const)('%s box of %s voxels under exclusion: R = %s(%s)', (supply, box, reference, se, replicates) => {
-    const plan = planOf({ ...onFloor(9, 6, [...box]), supply, crowding: 'exclusive', steps: longRun(1) })
+    const plan = planOf({ ...onFloor(6, 9, [...box]), supply, crowding: 'exclusive', steps: longRun(1) })
     expect(distance(meanTime(walk(kernel, plan, 'step', 'wall', replicates), tauSteps(1)), reference, se)).toBeLessThan(4)
   })
 })

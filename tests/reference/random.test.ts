@@ -19,6 +19,12 @@ describe('xoshiro128++', () => {
   it('gives the published first outputs from state 1, 2, 3, 4', () => expect(draws(new Stream([1, 2, 3, 4]), 10)).toEqual([
     641, 1573767, 3222811527, 3517856514, 836907274, 4247214768, 3867114732, 1355841295, 495546011, 621204420,
   ]))
+  // php-src, ext/random, test user_xoshiro128plusplus.phpt.
+  it('gives the published output after 102,400 others', () => {
+    const stream = new Stream([1, 2, 3, 4])
+    for (let i = 0; i < 102_400; i++) stream.next()
+    expect(stream.next()).toBe(747060474)
+  })
   // x/2^32 of the same outputs (computed).
   it('gives the same as fractions', () => {
     const expected = [1.4924444258213043e-7, 3.664211835712194e-4, 0.7503692822065204, 0.819064796436578, 0.19485765928402543]
