@@ -9,20 +9,13 @@ import { compilePlan } from '../shared/walk/plan'
 import { frameOf } from '../shared/walk/frame'
 import { runInNode } from '../workers/node'
 import { BadInput, EXIT, runCommand } from './support/exits'
+import type { Expectation, Preview } from './support/expectation'
 import { readOptions } from './support/options'
 import { readScenario } from './support/scenario-file'
 
 const USAGE = 'Usage: npm run -s expect -- FILE [--json]'
 /** A preview that would take longer is not walked [s]. */
 const PATIENCE_S = 120
-
-interface Preview { tauS: number | null, filled: number[], method: 'exact-linear' | 'walk-preview', replicates: number | null }
-export interface Expectation {
-  timesS: number[]
-  closedForm: { tauS: number | null, filled: number[], components: { name: string, sites: number, tauS: number | null }[] }
-  preview: Preview | null
-  reason?: string
-}
 
 const sumOfRows = (rows: readonly number[][]): number[] => (rows[0] ?? []).map((_, i) => rows.reduce((sum, row) => sum + row[i]!, 0))
 
