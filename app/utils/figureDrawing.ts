@@ -104,6 +104,12 @@ function gapPlace(text: string, timeS: number, value: number, axis: TimeAxis, fr
   return { x: Math.max(x - 30, frame.left + wide), y, anchor: 'end' as const, text }
 }
 
+/** The time axis alone, for sentences and read-outs. */
+export function figureTimeAxis(series: readonly FigureSeries[], scale: TimeScale): TimeAxis {
+  const { firstS, lastS } = bound(series)
+  return timeAxis(scale, firstS, lastS, LEFT, 842)
+}
+
 /** Everything that is drawn, in pixels. */
 export function layFigure(options: FigureOptions): FigureLayout {
   const { series } = options

@@ -23,6 +23,7 @@ export interface PlacedLabel {
 }
 
 export const LINE_HEIGHT_PX = 16
+const CELL_PX = 4
 /** Widths in Source Sans 3 at 12.5 px, by kind of character; generous, because a fallback face is wider. */
 const widthOf = (character: string, strong: boolean) =>
   (/[ijl.,:;'|!]/.test(character) ? 3.4 : /[mwMW%@]/.test(character) ? 10.4 : /[A-Z0-9τρ±]/.test(character) ? 7 : character === ' ' ? 3 : 6.3) * (strong ? 1.05 : 1)
@@ -81,49 +82,90 @@ function boxOf(lines: LabelLine[], x: number, y: number, anchor: 'start' | 'end'
 const runsThrough = (from: readonly [number, number], to: readonly [number, number], box: Box) =>
   Array.from({ length: 13 }, (_, i) => i / 12).some(share => holds(box, [from[0] + (to[0] - from[0]) * share, from[1] + (to[1] - from[1]) * share]))
 
+/** How many ink points lie in a box, by a summed table over cells of 4 px: asked thousands of times a figure. */
+class InkTable {
+  private readonly sums: Uint32Array
+  private readonly columns: number
+  private readonly rows: number
+
+  constructor(private readonly frame: Box, points: readonly (readonly [number, number])[]) {
+    this.columns = Math.ceil((frame.right - frame.left) / CELL_PX) + 1
+    this.rows = Math.ceil((frame.bottom - frame.top) / CELL_PX) + 1
+    this.sums = new Uint32Array((this.columns + 1) * (this.rows + 1))
+    const cells = new Uint8Array(this.columns * this.rows)
+    for (const [x, y] of points) {
+      const column = Math.floor((x - frame.left) / CELL_PX), row = Math.floor((y - frame.top) / CELL_PX)
+      if (column >= 0 && column < this.columns && row >= 0 && row < this.rows) cells[row * this.columns + column] = 1
+    }
+    const wide = this.columns + 1
+    for (let row = 0; row < this.rows; row++)
+      for (let column = 0; column < this.columns; column++)
+        this.sums[(row + 1) * wide + column + 1] = cells[row * this.columns + column]! + this.sums[row * wide + column + 1]! + this.sums[(row + 1) * wide + column]! - this.sums[row * wide + column]!
+  }
+
+  /** Inked cells in a box. */
+  count(box: Box): number {
+    const cell = (at: number, from: number, most: number) => Math.min(most, Math.max(0, Math.round((at - from) / CELL_PX)))
+    const left = cell(box.left, this.frame.left, this.columns), right = cell(box.right, this.frame.left, this.columns)
+    const top = cell(box.top, this.frame.top, this.rows), bottom = cell(box.bottom, this.frame.top, this.rows)
+    const wide = this.columns + 1
+    return this.sums[bottom * wide + right]! - this.sums[top * wide + right]! - this.sums[bottom * wide + left]! + this.sums[top * wide + left]!
+  }
+}
+
 interface Taken { box: Box, from: readonly [number, number], to: readonly [number, number] }
 interface Candidate extends Taken { label: PlacedLabel, cost: number }
-interface Surroundings { others: LabelTarget[], frame: Box, taken: Taken[], ink: readonly (readonly [number, number])[] }
+interface Surroundings { others: LabelTarget[], frame: Box, taken: Taken[], ink: InkTable }
 
-function candidate(target: LabelTarget, from: readonly [number, number], offset: readonly [number, number], parting: number, around: Surroundings): Candidate | null {
+/** A place for a label, or null where it cannot stand or costs at least as much as the best so far. */
+function candidate(target: LabelTarget, from: readonly [number, number], offset: readonly [number, number], parting: number, around: Surroundings, best: number): Candidate | null {
   const [dx, dy] = offset
+  const share = (from[0] - around.frame.left) / (around.frame.right - around.frame.left)
+  const plain = Math.hypot(dx, dy) * 0.12 + Math.abs(share - 0.42) * 8 - parting * 2.5
+  if (plain >= best) return null
   const anchor = dx < 0 ? 'end' as const : 'start' as const
   const to = [from[0] + dx, from[1] + dy] as const
   const x = to[0] + (dx < 0 ? -4 : 4)
   const y = to[1] + (dy < 0 ? -4 - (target.lines.length - 1) * LINE_HEIGHT_PX : 6)
   const box = boxOf(target.lines, x, y, anchor)
   if (!inside(box, around.frame)) return null
+  const inked = plain + around.ink.count(box) * 4
+  if (inked >= best) return null
   if (around.taken.some(other => overlap(box, other.box) || runsThrough(from, to, other.box) || runsThrough(other.from, other.to, box))) return null
-  const covered = around.ink.reduce((count, point) => count + (holds(box, point) ? 1 : 0), 0)
-  const share = (from[0] - around.frame.left) / (around.frame.right - around.frame.left)
-  const cost = covered * 4 + crossings(from, to, around.others) * 40 - parting * 2.5 + Math.hypot(dx, dy) * 0.12 + Math.abs(share - 0.42) * 8
-  return { label: { id: target.id, lines: target.lines, x, y, anchor, from, to }, box, from, to, cost }
+  const cost = inked + crossings(from, to, around.others) * 40
+  return cost < best ? { label: { id: target.id, lines: target.lines, x, y, anchor, from, to }, box, from, to, cost } : null
 }
 
-function candidatesFor(target: LabelTarget, around: Surroundings): Candidate[] {
+function bestPlace(target: LabelTarget, around: Surroundings): Candidate | null {
   const { frame } = around
-  const found: Candidate[] = []
+  let best: Candidate | null = null
   const stride = Math.max(1, Math.floor(target.points.length / 60))
   for (let i = 0; i < target.points.length; i += stride) {
     const from = target.points[i]!
     const share = (from[0] - frame.left) / (frame.right - frame.left)
     if (share < 0.04 || share > 0.94 || from[1] < frame.top || from[1] > frame.bottom) continue
     const parting = Math.min(partingAt(from[0], from[1], around.others), 16)
-    for (const offset of OFFSETS) {
-      const one = candidate(target, from, offset, parting, around)
-      if (one) found.push(one)
-    }
+    for (const offset of OFFSETS) best = candidate(target, from, offset, parting, around, best?.cost ?? Infinity) ?? best
   }
-  return found
+  return best
 }
 
-/** Points of a curve no further apart than 6 px, so that a label is seen to cover a straight stretch too. */
+/** Points of a curve no further apart than a cell, so that a label is seen to cover a straight stretch too. */
 function dense(points: LabelTarget['points']): (readonly [number, number])[] {
   return points.flatMap((point, i) => {
     const next = points[i + 1]
     if (!next) return [point]
-    const count = Math.min(200, Math.ceil(Math.hypot(next[0] - point[0], next[1] - point[1]) / 6))
-    return Array.from({ length: Math.max(1, count) }, (_, k) => [point[0] + (next[0] - point[0]) * k / count, point[1] + (next[1] - point[1]) * k / count] as const)
+    const count = Math.max(1, Math.min(200, Math.ceil(Math.hypot(next[0] - point[0], next[1] - point[1]) / CELL_PX)))
+    return Array.from({ length: count }, (_, k) => [point[0] + (next[0] - point[0]) * k / count, point[1] + (next[1] - point[1]) * k / count] as const)
+  })
+}
+/** Every point that is at least so far from the one before [px]: enough to see where curves cross and part. */
+function sparse(points: LabelTarget['points'], apartPx: number): LabelTarget['points'] {
+  let last = -Infinity
+  return points.filter(([x], i) => {
+    if (x - last < apartPx && i < points.length - 1) return false
+    last = x
+    return true
   })
 }
 
@@ -135,10 +177,11 @@ function dense(points: LabelTarget['points']): (readonly [number, number])[] {
 export function placeLabels(targets: LabelTarget[], frame: Box): PlacedLabel[] {
   const taken: Taken[] = []
   const placed: PlacedLabel[] = []
-  const ink = targets.flatMap(target => dense(target.points))
-  for (const target of targets) {
-    const others = targets.filter(other => other !== target && !other.edge)
-    const best = candidatesFor(target, { others, frame, taken, ink }).reduce<Candidate | null>((least, one) => !least || one.cost < least.cost ? one : least, null)
+  const seen = targets.map(target => ({ ...target, points: sparse(target.points, 7) }))
+  const ink = new InkTable(frame, seen.flatMap(target => dense(target.points)))
+  for (const target of seen) {
+    const others = seen.filter(other => other !== target && !other.edge)
+    const best = bestPlace(target, { others, frame, taken, ink })
     if (!best) continue
     placed.push(best.label)
     taken.push(best)
