@@ -99,7 +99,7 @@ function savedBytesOf(scenario: Scenario, replicates: number, { steps }: Lattice
   const rows = sites.length * (digits(perBlock * filled) + digits(perBlock * filled * filled)) + (sites.length === 2 ? digits(perBlock * filled * filled * 4) : 0)
   const ready = sites.some(site => site.readyPerS !== null) ? 2 : 1
   const perReplicate = sites.length * (digits(filled) + digits(filled * steps) + (schedule.decline ? digits(filled * steps * 65536) : 0))
-  return blocks.length * (samples * rows * ready + 512 * 3 + 200) + replicates * perReplicate
+  return blocks.length * (samples * rows * ready + Math.min(512, steps) * 3 + 200) + replicates * perReplicate
 }
 
 function unsavable(replicates: number, savedBytes: number): string | null {

@@ -15,6 +15,8 @@ export const ReplicateBlockSchema: z.ZodType<ReplicateBlock> = z.strictObject({
 export const SAVED_REPLICATES_LIMIT = 50_000
 /** A seed is a text, kept exactly; 1 to 200 characters. */
 export const SeedSchema = z.string().min(1, 'A seed has at least one character.').max(SCENARIO_LIMITS.seedLength, `A seed has at most ${SCENARIO_LIMITS.seedLength} characters.`)
+  // Half of a surrogate pair has no UTF-8 bytes, so no digest could cover it.
+  .refine(seed => !/\p{Surrogate}/u.test(seed), 'A seed is whole characters; half of one was read.')
 
 /** POST /api/scenarios/:scenarioId/runs with Idempotency-Key (1…200 characters) → RunDetail (201; 200 when the key was seen) */
 export const RunSaveSchema = z.strictObject({
