@@ -1,5 +1,5 @@
 /** Solves and packs the tables of one geometry, s_max and mobility: position-independent bytes in the kernel's memory. */
-import { ATTEMPT_TABLE_LIMIT, NEAR_MARGIN, WAIT_LIMIT, estimateWaitSteps, landingBins, landingSteps } from '../shared/walk/attempt-size'
+import { ATTEMPT_TABLE_LIMIT, WAIT_LIMIT, estimateWaitSteps, landingBins, landingSpan } from '../shared/walk/attempt-size'
 import type { WalkPlan } from '../shared/walk/types'
 import { cropBox, foldBox, mirrorAxes, returnsOf, ribbonBoxOf, type RibbonBox } from './attempt-boxes'
 import { Scratch, attemptExports } from './attempt-kernel'
@@ -143,11 +143,12 @@ function pack(host: KernelHost, starts: Starts, waits: Waits, landings: LandingR
 export function buildTables(host: KernelHost, plan: WalkPlan, attemptChance: number, mobility: number): TableSet {
   const scratch = new Scratch(host)
   try {
-    const box = ribbonBoxOf(plan), starts = startsOf(box), near = cropBox(box, NEAR_MARGIN)
+    const span = landingSpan(plan, attemptChance, mobility)
+    const box = ribbonBoxOf(plan), starts = startsOf(box), near = cropBox(box, span.margin)
     const waits = solveWaits(host, scratch, plan, box, starts, attemptChance, mobility)
     if (!waits.steady && waits.steps < plan.steps) throw new RangeError('The waiting law of this plan does not settle within what its tables may hold.')
     // Tables depend on the number of steps only where it cuts the waiting law short: what a cache holds must be what a fresh build makes.
-    const ends = landingBins(waits.steady ? landingSteps(mobility) : Math.min(landingSteps(mobility), waits.steps))
+    const ends = landingBins(waits.steady ? span.steps : Math.min(span.steps, waits.steps))
     const landings = landingRows(host, scratch, near, { starts, ends, attemptChance, mobility, waits, whole: near.size.every((n, axis) => n === box.size[axis]) })
     return pack(host, starts, waits, landings, box.fronts.length, attemptChance)
   } finally {

@@ -5,10 +5,12 @@ import type { WalkPlan } from './types'
 export const ATTEMPT_TABLE_LIMIT = 32 * 1024 * 1024
 /** Sites above this are not sampled from attempt to attempt [count]. */
 export const ATTEMPT_SITE_LIMIT = 1000
-/** Voxels around the ribbon that the landing law is solved in [count]. */
-export const NEAR_MARGIN = 12
-/** Steps of the landing law of a vesicle that moves in every step [1]. */
-export const LANDING_STEPS = 256
+/** Voxels around the ribbon that the landing law is solved in, and steps that it is solved for by a vesicle that moves in every step. */
+const NEAR = { margin: 12, steps: 256 } as const
+/** The same where a vesicle comes back often and remembers where from. */
+const FAR = { margin: 16, steps: 512 } as const
+/** Sites above which a vesicle remembers for long where on the plate it was [count]. */
+const SMALL_PLATE = 256
 /** Widths of landing bins grow by this ratio [1]. */
 export const BIN_RATIO = 1.12
 /** Longest explicit waiting time: outcomes are 16-bit [steps]. */
@@ -17,12 +19,17 @@ export const WAIT_LIMIT = 65_000
 const STEP_LIMIT = 255 * 65536
 
 /**
- * Steps of the landing law for a mobility: a slower vesicle spreads as far in more steps.
- * @param mobility - chance of moving in a step [1]
- * @returns steps [1]
+ * How far and how long the landing law is solved, so that its error per jump stays below 3e-3 (full solves in tests/unit/attempt).
+ * @param plan - compiled plan
+ * @param attemptChance - s_max [1]
+ * @param mobility - chance of moving in a step; a slower vesicle spreads as far in more steps [1]
+ * @returns margin around the ribbon [voxels] and steps [1]
  */
-export function landingSteps(mobility: number): number {
-  return Math.min(4096, Math.round(LANDING_STEPS / mobility))
+export function landingSpan(plan: WalkPlan, attemptChance: number, mobility: number): { margin: number, steps: number } {
+  const ends = extent(plan), twoFaces = ends[2]![1] > ends[2]![0]
+  const beyond = plan.supply === 'sealed' || ends[0]![0] - 1 > NEAR.margin
+  const { steps } = plan.siteCount > SMALL_PLATE || (twoFaces && beyond && attemptChance > 0.5) ? FAR : NEAR
+  return { margin: steps === FAR.steps && beyond ? FAR.margin : NEAR.margin, steps: Math.min(4096, Math.round(steps / mobility)) }
 }
 
 /**
@@ -68,22 +75,10 @@ export function attemptMobilities(plan: WalkPlan): number[] {
   return [...new Set(plan.vesicles.map(one => one.mobilityFactor))].filter(mobility => mobility > 0 && attemptCeiling(plan, mobility) > 0)
 }
 
-/**
- * Steps after which the waiting law is one exponential, roughly and from above: from the gap between the two slowest modes along the longest axis.
- * @param plan - compiled plan, held or sealed
- * @param mobility - chance of moving in a step [1]
- * @returns steps [1]
- */
-export function estimateWaitSteps(plan: WalkPlan, mobility: number): number {
-  const longest = Math.max(plan.nx, plan.ny, plan.nz, plan.supply === 'sealed' ? 0 : 2 * plan.nz) + 1
-  const gap = (plan.supply === 'sealed' ? 1 : 3) * 9.87 / (6 * longest * longest)
-  return Math.min(plan.steps, WAIT_LIMIT, Math.ceil((700 + 12 / gap) / mobility))
-}
-
-/** Mirror planes that a plan's sites have: those of its box, judged by where the sites lie. */
-function classCount(plan: WalkPlan): number {
+/** Lowest and highest coordinate of the voxels in front of sites, by axis. */
+function extent(plan: WalkPlan): [number, number][] {
   const px = plan.nx + 2, py = plan.ny + 2
-  const ends = [[Infinity, 0], [Infinity, 0], [Infinity, 0]] as [number, number][]
+  const ends: [number, number][] = [[Infinity, 0], [Infinity, 0], [Infinity, 0]]
   for (const p of plan.voxelOfSite) {
     const row = Math.floor(p / px), at = [p % px, row % py, Math.floor(row / py)]
     ends.forEach((end, axis) => {
@@ -91,12 +86,46 @@ function classCount(plan: WalkPlan): number {
       end[1] = Math.max(end[1], at[axis]!)
     })
   }
+  return ends
+}
+
+/** Squared π, over the 6 of a hop's six directions: decay per step of a mode of one half wave, times length squared. */
+const MODE = 9.8696 / 6
+
+/** Gap between the slowest mode that sites feel along an axis and the next one. Mirror symmetry removes the odd modes. */
+function modeGap(plan: WalkPlan, n: number, [low, high]: [number, number], axis: number): number {
+  const centred = low + high === n + 1
+  if (plan.supply === 'sealed') return (centred ? 4 : 1) * MODE / n ** 2
+  // A wall below (one face): modes of an odd number of quarter waves.
+  if (axis === 2 && low === 1) return 2 * MODE / (n + 0.5) ** 2
+  return (centred ? 8 : 3) * MODE / (n + 1) ** 2
+}
+
+/**
+ * Steps after which the waiting law is one exponential, roughly and from above: from the gap between the two slowest modes along the slowest axis.
+ * @param plan - compiled plan, held or sealed
+ * @param mobility - chance of moving in a step [1]
+ * @returns steps [1]
+ */
+export function estimateWaitSteps(plan: WalkPlan, mobility: number): number {
+  return Math.min(plan.steps, WAIT_LIMIT, settlingSteps(plan, mobility))
+}
+
+function settlingSteps(plan: WalkPlan, mobility: number): number {
+  const ends = extent(plan), gap = Math.min(...[plan.nx, plan.ny, plan.nz].map((n, axis) => modeGap(plan, n, ends[axis]!, axis)))
+  return Math.ceil((600 + 8 / gap) / mobility)
+}
+
+/** True when the waiting law of a run may neither end nor settle within the steps that tables can hold. */
+const neverSettles = (plan: WalkPlan, mobility: number) => Math.min(plan.steps, settlingSteps(plan, mobility)) > WAIT_LIMIT
+
+/** Classes of starts: the mirror planes that a plan's sites have, judged by where the sites lie. */
+function classCount(plan: WalkPlan): number {
   const sizes = [plan.nx, plan.ny, plan.nz]
-  let classes = plan.siteCount
-  ends.forEach(([low, high], axis) => {
-    if (low + high === sizes[axis]! + 1 && high > low) classes = axis === 2 ? classes / 2 : Math.ceil((high - low + 1) / 2) * classes / (high - low + 1)
-  })
-  return Math.ceil(classes)
+  return Math.ceil(extent(plan).reduce((classes, [low, high], axis) => {
+    if (low + high !== sizes[axis]! + 1 || high === low) return classes
+    return axis === 2 ? classes / 2 : Math.ceil((high - low + 1) / 2) * classes / (high - low + 1)
+  }, plan.siteCount))
 }
 
 /**
@@ -108,9 +137,10 @@ export function attemptTableBytes(plan: WalkPlan): number {
   if (plan.supply === 'stirred' || plan.crowding !== 'independent' || plan.siteCount > ATTEMPT_SITE_LIMIT || plan.steps > STEP_LIMIT) return Infinity
   const classes = classCount(plan), sites = plan.siteCount
   return attemptMobilities(plan).reduce((bytes, mobility) => {
+    if (neverSettles(plan, mobility)) return Infinity
     const waits = classes * (estimateWaitSteps(plan, mobility) + 3) * 8
     // Short waits reach few sites: about a third of the full rows is never made.
-    const landings = classes * (landingBins(landingSteps(mobility)).length + LATE_BINS + 1) * 2 * (sites * 4 + 8)
+    const landings = classes * (landingBins(landingSpan(plan, attemptCeiling(plan, mobility), mobility).steps).length + LATE_BINS + 1) * 2 * (sites * 4 + 8)
     return bytes + waits + landings + classes * sites * 2 + sites * 22 + 40_000
   }, 0)
 }
