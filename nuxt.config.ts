@@ -70,6 +70,10 @@ export default defineNuxtConfig({
     'nitro:config'(config) {
       config.errorHandler = [fileURLToPath(new URL('./server/error.ts', import.meta.url)), ...[config.errorHandler ?? []].flat()]
     },
+    // The server build leaves shared/ to Nitro; a relative import of it must stay absolute, or its path is read from the wrong folder.
+    'vite:extendConfig'(config, { isServer }) {
+      if (isServer && config.build?.rollupOptions) config.build.rollupOptions.makeAbsoluteExternalsRelative = false
+    },
   },
   auth: { loadStrategy: 'none' },
   eslint: { config: { stylistic: { braceStyle: '1tbs' } } },
