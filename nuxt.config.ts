@@ -4,6 +4,8 @@ import { examinerBundle } from './server/jobs/bundle'
 
 export default defineNuxtConfig({
   modules: ['@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security', '@nuxt/eslint'],
+  // Vite's development server answers worker scripts without the header that `require-corp` asks for.
+  $development: { security: { headers: { crossOriginEmbedderPolicy: false } } },
   components: [{ path: '~/components', pathPrefix: false }],
   devtools: { enabled: false },
   app: {
@@ -102,6 +104,4 @@ export default defineNuxtConfig({
     },
   },
   tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
-  // Vite's development server answers worker scripts without the header that `require-corp` asks for.
-  $development: { security: { headers: { crossOriginEmbedderPolicy: false } } },
 })
