@@ -17,7 +17,8 @@ const REASONS: Record<string, string> = {
   sign_in_first: 'You are signed out; it is sent after you sign in again.',
 }
 
-export function useRunSending(settled: (run: LocalRun) => void) {
+/** `isMine`: the run belongs to who is signed in now; another person's is never sent under this one's name. */
+export function useRunSending(settled: (run: LocalRun) => void, isMine: (run: LocalRun) => boolean) {
   const api = useApi()
   const tries = new Map<string, number>()
   const timers = new Map<string, ReturnType<typeof setTimeout>>()
@@ -44,6 +45,10 @@ export function useRunSending(settled: (run: LocalRun) => void) {
   async function send(run: LocalRun): Promise<void> {
     if (run.send.state === 'sending' || run.send.state === 'sent' || !run.outcome || !run.engine || run.asked.scenarioId === null || run.asked.revision === null) return
     clearTimeout(timers.get(run.localId))
+    if (!isMine(run)) {
+      run.send = { ...run.send, state: 'unsent', reason: REASONS.sign_in_first! }
+      return
+    }
     if (run.outcome.replicates > SAVED_REPLICATES_LIMIT)
       return refuse(run, 'file', `A saved run has at most ${SAVED_REPLICATES_LIMIT} replicates; this one has ${run.outcome.replicates}. Take it as a file.`)
     run.send = { ...run.send, state: 'sending', reason: null }

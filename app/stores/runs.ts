@@ -14,10 +14,10 @@ export const useRunsStore = defineStore('runs', () => {
   const deviceKeeps = shallowRef(true)
   const stops = new Map<string, AbortController>()
   const blocksOf = new Map<string, ReplicateBlock[]>()
-  const sending = useRunSending(settled)
   let walking: ReturnType<typeof useRunWalk> | undefined
 
   const userId = () => session.me?.userId ?? 'nobody'
+  const sending = useRunSending(settled, run => run.userId === userId())
   const find = (localId: string) => list.value.find(run => run.localId === localId && run.userId === userId()) ?? null
   const running = computed(() => list.value.filter(run => run.state === 'running'))
   const unsent = computed(() => list.value.filter(run => run.send.state === 'unsent' || run.send.state === 'sending'))
