@@ -5,6 +5,9 @@ import { newLocalRun, wantedReplicates, wouldBeLost, type LocalRun, type RunStar
 /** Finished runs that are kept in this page's list; older ones stay on the device. */
 const LIST_LENGTH = 50
 
+/** So long the device remembers where a run that it sent is saved [d]. */
+const POINTER_DAYS = 7
+
 export const useRunsStore = defineStore('runs', () => {
   const session = useSessionStore()
   const progress = useScaleProgress()
@@ -21,18 +24,20 @@ export const useRunsStore = defineStore('runs', () => {
   const find = (localId: string) => list.value.find(run => run.localId === localId && run.userId === userId()) ?? null
   const running = computed(() => list.value.filter(run => run.state === 'running'))
   const unsent = computed(() => list.value.filter(run => run.send.state === 'unsent' || run.send.state === 'sending'))
-  const mine = computed(() => list.value.filter(run => run.userId === userId() && run.asked.purpose === 'run'))
+  const mine = computed(() => list.value.filter(run => run.userId === userId() && run.asked.purpose === 'run' && !(run.send.state === 'sent' && run.outcome === null)))
   const atRisk = computed(() => list.value.some(wouldBeLost))
   watch(() => {
     const newest = running.value.findLast(run => run.asked.purpose === 'run') ?? running.value.at(-1)
     return newest ? newest.replicatesDone / wantedReplicates(newest.asked) : null
   }, (share) => { progress.value = share })
 
-  /** Whatever the server said, the device's copy says it too; a saved one needs no copy of its blocks. */
+  /** Whatever the server said, the device's copy says it too; a saved one needs no copy of its numbers. */
   async function settled(run: LocalRun) {
     if (run.asked.purpose !== 'run') return
-    await keep(run, run.send.state === 'sent' ? [] : blocksOf.get(run.localId) ?? [])
-    if (run.send.state === 'sent') await close(run.localId)
+    if (run.send.state !== 'sent') return keep(run, blocksOf.get(run.localId) ?? [])
+    // What is left on the device is the way to the saved run, for an address that somebody still has open.
+    await outbox.keep({ ...run, outcome: null, precision: [] }, [])
+    await close(run.localId)
   }
   async function keep(run: LocalRun, blocks: ReplicateBlock[]) {
     const kept = await outbox.keep(run, blocks)
@@ -120,7 +125,10 @@ export const useRunsStore = defineStore('runs', () => {
   async function restore() {
     const own = userId()
     list.value = list.value.filter(run => run.userId === own || run.state === 'running')
-    for (const kept of await outbox.all(own)) await adopt(kept)
+    const old = new Date(Date.now() - POINTER_DAYS * 86_400_000).toISOString()
+    for (const kept of await outbox.all(own))
+      if (kept.run.send.state === 'sent' && (kept.run.finishedAt ?? '') < old) await outbox.drop(own, kept.run.localId)
+      else await adopt(kept)
   }
   function retryAll() {
     for (const run of list.value) if (run.send.state === 'unsent' && run.userId === userId()) void sending.send(run)

@@ -25,7 +25,7 @@ export function outcomeWalk(outcome: Outcome, style: OutcomeSeriesStyle = {}): F
   const outer = style.spread !== false && replicates > 1 ? bandOf(values, outcome.varFilledTotal, variance => Z95 * Math.sqrt(variance), sites) : undefined
   return {
     id: style.id ?? 'walk', kind: style.kind ?? 'walk',
-    label: style.label ?? (replicates === 1 ? 'Walk, 1 replicate' : `Walk, mean of ${replicates} replicates`), shortLabel: style.shortLabel ?? (inner ? 'Walk, 95 % band' : 'Walk'),
+    label: style.label ?? `${replicates === 1 ? 'Walk, 1 replicate' : `Walk, mean of ${replicates} replicates`}${outcome.partial ? ' (partial)' : ''}`, shortLabel: style.shortLabel ?? (inner ? 'Walk, 95 % band' : 'Walk'),
     note: inner ? (outer ? 'inner band: 95 % interval of the mean' : '95 % interval of the mean') : 'one replicate has no band',
     times: outcome.timesS, values, inner, ...(outer ? { outer, outerLabel: '95 % of single ribbons' } : {}),
   }
