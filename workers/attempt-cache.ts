@@ -4,9 +4,6 @@ import type { WalkPlan } from '../shared/walk/types'
 import { buildTables, type TableSet } from './attempt-tables'
 import type { KernelHost } from './host'
 
-/** Bytes of tables kept that no prepared walk may ask for again. */
-const KEPT_BYTES = 2 * ATTEMPT_TABLE_LIMIT
-
 interface Entry { key: string, set: TableSet }
 
 /** What a set depends on besides the number of steps. */
@@ -20,8 +17,10 @@ const serves = (set: TableSet, steps: number) => set.steady ? set.waitSteps <= s
 
 export class TableCache {
   private readonly entries: Entry[] = []
-  /** Sets built so far. */
+  /** Sets that came in so far. */
   built = 0
+  /** Bytes of tables kept; the newest two stay whatever they take, since one plan may need both. */
+  keptBytes = 2 * ATTEMPT_TABLE_LIMIT
 
   constructor(private readonly host: KernelHost) {}
 
@@ -38,6 +37,10 @@ export class TableCache {
     else this.keep(key, set)
   }
 
+  get bytes(): number {
+    return this.entries.reduce((sum, entry) => sum + entry.set.bytes, 0)
+  }
+
   private find(key: string, steps: number): TableSet | null {
     const at = this.entries.findIndex(entry => entry.key === key && serves(entry.set, steps))
     if (at < 0) return null
@@ -49,10 +52,8 @@ export class TableCache {
   private keep(key: string, set: TableSet): TableSet {
     this.built++
     this.entries.push({ key, set })
-    let bytes = this.entries.reduce((sum, entry) => sum + entry.set.bytes, 0)
-    while (bytes > KEPT_BYTES && this.entries.length > 2) {
+    while (this.bytes > this.keptBytes && this.entries.length > 2) {
       const dropped = this.entries.shift()!.set
-      bytes -= dropped.bytes
       this.host.release(dropped.pointer)
       dropped.pointer = 0
     }
