@@ -9,13 +9,10 @@ let store: UseStore | undefined
 /** A browser without storage throws at once; one that is full throws at the write. */
 const opened = () => store ??= createStore('moorage-runs', 'runs')
 
-/** A copy that can be cloned into storage: no proxies. */
-const plain = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T
-
 export function useOutbox() {
   async function keep(run: LocalRun, blocks: ReplicateBlock[]): Promise<boolean> {
     try {
-      await set(keyOf(run.userId, run.localId), { run: { ...plain({ ...run, kept: 'device' }) }, blocks } satisfies KeptRun, opened())
+      await set(keyOf(run.userId, run.localId), { run: { ...run, kept: 'device' }, blocks } satisfies KeptRun, opened())
       return true
     } catch {
       return false

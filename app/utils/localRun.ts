@@ -68,8 +68,10 @@ export function makeSeed(): string {
 export const makeLocalId = (): string => [...random(16)].map(byte => byte.toString(16).padStart(2, '0')).join('')
 
 export function newLocalRun(start: RunStart, userId: string, startedAt: string): LocalRun {
+  // A document under the pen is reactive; a copy of it can be handed to workers and kept on the device.
+  const scenario = JSON.parse(JSON.stringify(start.scenario)) as Scenario
   return {
-    localId: makeLocalId(), userId, asked: { ...start, seed: start.seed?.trim() || makeSeed(), purpose: start.purpose ?? 'run' }, startedAt,
+    localId: makeLocalId(), userId, asked: { ...start, scenario, seed: start.seed?.trim() || makeSeed(), purpose: start.purpose ?? 'run' }, startedAt,
     state: 'running', stopping: false, replicatesDone: 0, elapsedMs: 0, remainingMs: null, workers: 0, precision: [], outcome: null, engine: null, landingError: 0,
     durationMs: 0, problem: null, finishedAt: null, kept: 'none',
     send: { state: 'local', reason: null, runId: null, number: null, savedAt: null },
