@@ -51,11 +51,10 @@ async function main() {
   const digest = await ensureBuild()
   const placed = placeServer(dataFolder, digest)
   const secrets = installationSecrets(dataFolder)
-  const { migrate, openDatabase, seed } = await import('./support/database.mjs')
+  const { fillDatabase, openDatabase } = await import('./support/database.mjs')
   const database = await openDatabase(dataFolder, secrets)
   endings.push(database.stop)
-  await migrate(database)
-  await seed(database)
+  await fillDatabase(database, dataFolder)
   await serve({ where, dataFolder, placed, database, secrets })
 }
 
@@ -69,8 +68,8 @@ async function serve({ where, dataFolder, placed, database, secrets }) {
   }), dataFolder)
   endings.push(() => stopServer(child, dataFolder))
   const ended = once(child, 'exit')
-  await waitForHealth(child, greet.localAddress(where))
-  await greet.print(where, { demoAccounts, dataFolder, ownDatabase: !process.env.DATABASE_URL })
+  const [accounts] = await Promise.all([demoAccounts ? greet.demoAccountLines() : '', waitForHealth(child, greet.localAddress(where))])
+  greet.print(where, { accounts, dataFolder, ownDatabase: !process.env.DATABASE_URL })
   const [code, signal] = await ended
   if (stopping) return await new Promise(() => undefined)
   throw new Error(`The web server ended unexpectedly (${code ?? signal}).`)

@@ -17,10 +17,14 @@ function* filesUnder(path) {
   for (const name of readdirSync(path).sort()) yield* filesUnder(join(path, name))
 }
 
-/** Digest of everything that the build is made from. @returns {string} lower-case hex */
-export function inputsDigest() {
+/**
+ * Digest of files and folders of the checkout, names and contents.
+ * @param {string[]} paths from the checkout's root; what is missing counts as empty
+ * @returns {string} lower-case hex
+ */
+export function digestOf(paths) {
   const hash = createHash('sha256')
-  for (const input of INPUTS) {
+  for (const input of paths) {
     for (const file of filesUnder(join(ROOT, input))) {
       const content = readFileSync(file)
       hash.update(`${file.slice(ROOT.length)}\0${content.length}\0`)
@@ -29,6 +33,9 @@ export function inputsDigest() {
   }
   return hash.digest('hex')
 }
+
+/** Digest of everything that the build is made from. @returns {string} lower-case hex */
+export const inputsDigest = () => digestOf(INPUTS)
 
 /** Digest of the inputs of the build that stands in .output. @returns {string | null} null when there is none */
 export function builtDigest() {
@@ -42,6 +49,13 @@ export const buildEnvironment = () => {
   return environment
 }
 
+/** The part of a long output that tells what went wrong: from the first error on, else its end. */
+function tellingPart(output) {
+  const lines = output.split('\n')
+  const first = lines.findIndex(line => /\berror\b/i.test(line))
+  return first < 0 ? lastLines(output, 30) : lines.slice(Math.max(0, first - 2), first + 20).join('\n')
+}
+
 /**
  * Builds when needed.
  * @returns {Promise<string>} digest of the build's inputs
@@ -53,7 +67,7 @@ export async function ensureBuild() {
   say('Building the application (about half a minute) …')
   const { status, output } = await run(tool('nuxt'), ['build'], { env: buildEnvironment(), quiet: true })
   if (status !== 0 || !existsSync(join(ROOT, '.output/server/index.mjs')))
-    throw new Refusal(`The application could not be built; "nuxt build" ended with ${status}. It says:\n${lastLines(output, 30)}`)
+    throw new Refusal(`The application could not be built; "nuxt build" ended with ${status}. It says:\n${tellingPart(output)}`)
   writeFileSync(STAMP, wanted)
   say(`The application is built (${duration(Date.now() - started)}).`)
   return wanted

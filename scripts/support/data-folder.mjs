@@ -29,6 +29,7 @@ function checkEntry(folder, account, who) {
  */
 export function openDataFolder({ ownCluster }) {
   const folder = dataFolderPath()
+  const isNew = !existsSync(folder)
   try {
     mkdirSync(folder, { recursive: true, mode: isRoot() ? 0o711 : 0o700 })
     const content = readdirSync(folder)
@@ -41,8 +42,13 @@ export function openDataFolder({ ownCluster }) {
     if (error instanceof Refusal) throw error
     throw new Refusal(`The data folder ${folder} cannot be used: ${error.message}. Choose another with MOORAGE_DATA.`)
   }
-  if (ownCluster) checkEntry(folder, databaseAccount(), 'database\'s account')
-  checkEntry(folder, serverAccount(), 'web server\'s account')
+  try {
+    if (ownCluster) checkEntry(folder, databaseAccount(), 'database\'s account')
+    checkEntry(folder, serverAccount(), 'web server\'s account')
+  } catch (error) {
+    if (isNew) rmSync(folder, { recursive: true, force: true })
+    throw error
+  }
   return folder
 }
 

@@ -1,5 +1,7 @@
 /** The database of one start: ours in the data folder, kept alive while the application is served, or the one that DATABASE_URL names. */
+import { existsSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
+import { digestOf } from './build.mjs'
 import { initCluster, runningCluster, startCluster, stopCluster } from './cluster.mjs'
 import { APPLICATION_ROLE, prepareDatabase } from './roles.mjs'
 import { run } from './run.mjs'
@@ -64,18 +66,33 @@ async function script(name, words, env, what) {
   return output
 }
 
-/**
- * Brings the tables up to this version.
- * @param {Database} database from openDatabase
- */
-export async function migrate({ ownerUrl, applicationRole }) {
+/** What tables, rights and demo bench are made from; the digest is kept beside our own cluster, so that a start with nothing new asks nothing. */
+const MADE_FROM = ['drizzle', 'server/db', 'scripts/migrate.ts', 'scripts/seed.ts', 'scripts/demo.ts']
+
+/** Brings the tables up to this version; the other program says what it did. @param {Database} database from openDatabase */
+async function migrate({ ownerUrl, applicationRole }) {
   await script('migrate.ts', [], { MOORAGE_OWNER_URL: ownerUrl, MOORAGE_APP_ROLE: applicationRole ?? '' }, 'The database could not be brought up to this version.')
 }
 
+/** Fills an empty database with the invented demo bench; one that was filled before stays as it is. @param {Database} database from openDatabase */
+async function seed({ ownerUrl, applicationUrl }) {
+  await script('seed.ts', [], { MOORAGE_OWNER_URL: ownerUrl, NUXT_DATABASE_URL: applicationUrl }, 'The demo bench could not be written.')
+}
+
 /**
- * Fills an empty database with the invented demo bench; a database that was filled before stays as it is.
+ * Tables and demo bench, where they are not known to be this version's.
  * @param {Database} database from openDatabase
+ * @param {string} dataFolder data folder
  */
-export async function seed({ ownerUrl, applicationUrl }) {
-  return await script('seed.ts', [], { MOORAGE_OWNER_URL: ownerUrl, NUXT_DATABASE_URL: applicationUrl }, 'The demo bench could not be written.')
+export async function fillDatabase(database, dataFolder) {
+  const stamp = join(dataFolder, 'database.sha256')
+  const wanted = digestOf(MADE_FROM)
+  // A database of somebody else's may have been changed by anyone: it is always asked.
+  const own = database.applicationRole !== null
+  if (own && existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return
+  say('Preparing the database …')
+  rmSync(stamp, { force: true })
+  await migrate(database)
+  await seed(database)
+  if (own) writeFileSync(stamp, wanted)
 }

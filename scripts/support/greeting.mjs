@@ -19,16 +19,15 @@ async function demoAccountLines() {
   return status === 0 ? output : ''
 }
 
-async function print(where, { demoAccounts, dataFolder, ownDatabase }) {
+function print(where, { accounts, dataFolder, ownDatabase }) {
   say(`\nMoorage is served at ${localAddress(where)}/`)
   say(ownDatabase ? `Its database and secrets are in ${dataFolder}.` : 'It uses the database that DATABASE_URL names.')
-  if (demoAccounts) {
-    say(`\n${await demoAccountLines()}`)
-  } else if (!isLoopback(where.host)) {
+  if (accounts) say(`\n${accounts}`)
+  if (!isLoopback(where.host)) {
     warn(`\nThis address is open to other machines, so the demo accounts cannot sign in. Register an account of your own.`)
     if (scheme() === 'http') warn('It is served without TLS: pass phrases would cross the network in the clear, and browsers refuse the sign-in cookie. Put a proxy with TLS in front of it, or give NITRO_SSL_CERT and NITRO_SSL_KEY.')
   }
   say('\nCtrl-C stops the web server and the database.')
 }
 
-export const greet = { localAddress, print }
+export const greet = { localAddress, demoAccountLines, print }
