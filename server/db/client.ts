@@ -13,8 +13,10 @@ export function openPool(connectionString: string, most = 10): pg.Pool {
     connectionString, max: most, connectionTimeoutMillis: 4000, idleTimeoutMillis: 30_000,
     statement_timeout: 20_000, query_timeout: 25_000, keepAlive: true, application_name: 'moorage',
   })
-  // An idle connection that breaks is dropped by the pool; without a listener it would end the process.
+  // A connection that breaks while idle, or between two statements of a transaction, is an event; without a listener it would end the process.
+  // The statement under way or the next one is told, and the pool drops the connection.
   pool.on('error', () => {})
+  pool.on('connect', client => client.on('error', () => {}))
   return pool
 }
 export const openDatabase = (pool: pg.Pool): Database => drizzle(pool, { schema })

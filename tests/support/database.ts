@@ -33,7 +33,12 @@ export async function cloneDatabase(cluster: ClusterAccess): Promise<TestDatabas
   const name = `t_${process.pid}_${Date.now().toString(36)}_${count}`
   const url = (user: string, password: string, database = name) => addressOf({ port: cluster.port, user, password, database })
   const adminUrl = url(SUPERUSER, cluster.superPassword, 'postgres')
-  await asSuperuser(adminUrl, client => client.query(`create database ${name} template ${TEMPLATE} owner ${OWNER_ROLE}`))
+  await asSuperuser(adminUrl, async (client) => {
+    await client.query(`create database ${name} template ${TEMPLATE} owner ${OWNER_ROLE}`)
+    // Rights of a database itself are not copied from a template.
+    await client.query(`revoke all on database ${name} from public`)
+    await client.query(`grant connect on database ${name} to ${APPLICATION_ROLE}`)
+  })
   const superUrl = url(SUPERUSER, cluster.superPassword)
   const applicationUrl = url(APPLICATION_ROLE, cluster.applicationPassword)
   const pool = openPool(applicationUrl, 4)

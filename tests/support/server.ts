@@ -5,7 +5,7 @@ import { setTimeout as pause } from 'node:timers/promises'
 import { fileURLToPath } from 'node:url'
 import { freePort } from '../../scripts/support/cluster.mjs'
 
-const SCRIPT = process.env.MOORAGE_SERVER ?? fileURLToPath(new URL('../../.output/server/index.mjs', import.meta.url))
+export const SERVER_SCRIPT = process.env.MOORAGE_SERVER ?? fileURLToPath(new URL('../../.output/server/index.mjs', import.meta.url))
 const READY_MS = 30_000
 
 export interface TestServer {
@@ -22,9 +22,9 @@ const TEST_SETTINGS = {
 }
 
 export async function startServer(applicationUrl: string, settings: Record<string, string> = {}): Promise<TestServer> {
-  if (!existsSync(SCRIPT)) throw new Error(`There is no built server at ${SCRIPT}: run npm run build first.`)
+  if (!existsSync(SERVER_SCRIPT)) throw new Error(`There is no built server at ${SERVER_SCRIPT}: run npm run build first.`)
   const port = await freePort()
-  const child = spawn(process.execPath, [SCRIPT], {
+  const child = spawn(process.execPath, [SERVER_SCRIPT], {
     env: { PATH: process.env.PATH, NODE_ENV: 'production', HOST: '127.0.0.1', PORT: String(port), NUXT_DATABASE_URL: applicationUrl, ...TEST_SETTINGS, ...settings },
     stdio: ['ignore', 'pipe', 'pipe'],
   })

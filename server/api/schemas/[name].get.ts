@@ -3,7 +3,8 @@ import { documentSchemas } from '../../utils/openapi'
 
 export default defineEventHandler((event) => {
   publicRoute(event)
-  const found = documentSchemas()[getRouterParam(event, 'name') as 'scenario']
+  const name = getRouterParam(event, 'name')!
+  const found = Object.hasOwn(documentSchemas(), name) ? documentSchemas()[name as 'scenario'] : undefined
   if (!found) throw problem('not_found')
   setResponseHeader(event, 'content-type', 'application/schema+json')
   return found
