@@ -1,6 +1,6 @@
 /** Paired timing: A, B, A, B … in one run; the ratio is the median of the pairs' ratios. */
 
-export const ROUNDS = 5
+export const ROUNDS = 7
 
 /** Median of an odd number of values. */
 export function median(values: number[]): number {

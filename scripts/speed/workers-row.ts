@@ -20,6 +20,6 @@ async function sizeOfJob(): Promise<number> {
 export async function twoWorkers(): Promise<Measured> {
   const replicates = await sizeOfJob()
   const crewOf = (workers: number) => () => timed(() => runInNode({ scenario: exclusiveLong, seed: SEED, replicates, algorithm: 'step' }, { workers }))
-  const paired = await pairUp(crewOf(2), crewOf(1))
+  const paired = await pairUp(crewOf(2), crewOf(1), 5)
   return { ...paired, note: `${replicates} replicates, threads started within the time` }
 }

@@ -1,8 +1,8 @@
 /** GET /api/health - ready only when the database answers. */
-import { sql } from 'drizzle-orm'
+import { askDatabase } from '../services/health'
 
 export default defineEventHandler(async (event) => {
   publicRoute(event)
-  await useDatabase().execute(sql`select 1`)
+  await askDatabase(useDatabase())
   return { ready: true }
 })

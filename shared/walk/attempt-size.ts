@@ -59,7 +59,12 @@ export function lateBins(solved: number): number[] {
   return [...ends, ends[LATE_BINS - 1]! + 1]
 }
 
-/** s_max of a plan's mobility class: the largest attachment probability of its vesicles, up to 1, 1/2, 1/4, …, so that tables survive edits; 0 where none attaches. */
+/**
+ * s_max of a plan's mobility class: the largest attachment probability of its vesicles, up to 1, 1/2, 1/4, …, so that tables survive edits.
+ * @param plan - compiled plan
+ * @param mobility - chance of moving in a step that names the class [1]
+ * @returns the probability; 0 where none attaches [1]
+ */
 export function attemptCeiling(plan: WalkPlan, mobility: number): number {
   let largest = 0
   plan.vesicles.forEach((vesicle, i) => {
@@ -70,7 +75,11 @@ export function attemptCeiling(plan: WalkPlan, mobility: number): number {
   return largest > 0 ? ceiling : 0
 }
 
-/** Different mobilities above 0 whose vesicles can attach somewhere. */
+/**
+ * Different mobilities above 0 whose vesicles can attach somewhere.
+ * @param plan - compiled plan
+ * @returns chances of moving in a step [1]
+ */
 export function attemptMobilities(plan: WalkPlan): number[] {
   return [...new Set(plan.vesicles.map(one => one.mobilityFactor))].filter(mobility => mobility > 0 && attemptCeiling(plan, mobility) > 0)
 }
@@ -131,7 +140,7 @@ function classCount(plan: WalkPlan): number {
 /**
  * Bytes that the tables of a plan take at most.
  * @param plan - compiled plan
- * @returns bytes; Infinity where the sampler does not apply
+ * @returns the size; Infinity where the sampler does not apply [bytes]
  */
 export function attemptTableBytes(plan: WalkPlan): number {
   if (plan.supply === 'stirred' || plan.crowding !== 'independent' || plan.siteCount > ATTEMPT_SITE_LIMIT || plan.steps > STEP_LIMIT) return Infinity

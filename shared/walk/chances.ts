@@ -4,7 +4,7 @@ import type { WalkPlan } from './types'
 /**
  * Chance per step that an empty site of a class attaches a vesicle from a neighbourhood redrawn every step: (ρa³/6)·Σ share·mobility·p, summed over vesicle classes.
  * @param plan - compiled plan
- * @param siteClass - index of the site class
+ * @param siteClass - index of the site class [1]
  * @returns the chance without decline [1]
  */
 export function stirredChance(plan: WalkPlan, siteClass: number): number {

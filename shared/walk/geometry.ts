@@ -16,7 +16,12 @@ export interface Box {
 /** A plate of columns × rows sites whose first column, row and layer (inner voxels, from 0) are given. One face: its sites lie in the wall below layer 0. Two faces: the plate fills layer `z`. */
 export interface Placing { columns: number, rows: number, faces: 1 | 2, x: number, y: number, z: number }
 
-/** Steps of index for a hop of direction d: +x −x +y −y +z −z. */
+/**
+ * Steps of index for a hop of direction d: +x −x +y −y +z −z.
+ * @param nx - inner voxels along x [count]
+ * @param ny - inner voxels along y [count]
+ * @returns differences of padded indices, one per direction [1]
+ */
 export function hopOffsets(nx: number, ny: number): Int32Array {
   const row = nx + 2, layer = row * (ny + 2)
   return Int32Array.of(1, -1, row, -row, layer, -layer)

@@ -1,11 +1,11 @@
 /** Replicate blocks: how a run is cut into them and how they are put together again. Integers only, so order cannot matter. */
 import type { ReplicateBlock } from './types'
 
-/** A block holds max(50, ceil(N/400)) replicates. */
+/** Replicates in a block of a run of N: max(50, ceil(N/400)) [replicates]. */
 export const blockSize = (replicates: number): number => Math.max(50, Math.ceil(replicates / 400))
 
 export interface ReplicateRange { from: number, to: number }
-/** The blocks of a run of `replicates`, in order; the last may be shorter. */
+/** The blocks of a run of so many [replicates], in order; the last may be shorter. */
 export function blockRanges(replicates: number): ReplicateRange[] {
   const size = blockSize(replicates)
   return Array.from({ length: Math.ceil(replicates / size) }, (_, i) => ({ from: i * size, to: Math.min(replicates, (i + 1) * size) }))

@@ -11,7 +11,7 @@ export type Route = { algorithm: Algorithm, refusal: null } | { algorithm: null,
 const take = (algorithm: Algorithm): Route => ({ algorithm, refusal: null })
 const refuse = (refusal: string): Route => ({ algorithm: null, refusal })
 
-/** Whole megabytes, at least 1, as a person reads them. */
+/** A size [bytes] in whole megabytes, at least 1, as a person reads it. */
 export const megabytes = (bytes: number): string => `${Math.max(1, Math.round(bytes / 2 ** 20))} MB`
 
 /**

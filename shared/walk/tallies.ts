@@ -32,6 +32,7 @@ export function talliesOf(frame: OutcomeFrame, block: ReplicateBlock): Tallies {
   }
 }
 
+/** Sum of a row of counts; 0 [1] where there is none. */
 export const sumOf = (row: readonly number[] | undefined): number => {
   let sum = 0
   for (const value of row ?? []) sum += value
