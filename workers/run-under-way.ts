@@ -1,4 +1,4 @@
-/** One run: hands blocks to members, takes chunks back, replaces lost workers, stops on abort or at its target. */
+/** One run: hands chunks to members, takes chunks back, replaces lost workers, stops on abort or at its target. */
 import { frameOf } from '../shared/walk/frame'
 import { estimateCost } from '../shared/walk/cost'
 import { blockRanges, blockSize } from '../shared/walk/merge'
@@ -10,8 +10,10 @@ import type { RunOrder, RunProgress, RunResult, WalkJob } from './protocol'
 import { RunBook, type Task } from './run-book'
 import { regroup, Target, targetRanges } from './target'
 
-/** A block that takes this many workers down with it is not the workers' fault. */
+/** Replicates that take this many workers down with them are not the workers' fault. */
 const MOST_FAILURES = 3
+/** Fewer replicates than this are not worth another worker. */
+const LEAST_PER_MEMBER = 5
 
 export class RunUnderWay {
   private readonly book: RunBook
@@ -48,7 +50,7 @@ export class RunUnderWay {
     if (signal?.aborted) this.stopped = this.aborted = true
     signal?.addEventListener('abort', stop, { once: true })
     try {
-      const crew = this.members.slice(0, Math.min(this.members.length, this.book.ranges.length))
+      const crew = this.members.slice(0, Math.min(this.members.length, Math.ceil(this.asked / LEAST_PER_MEMBER)))
       await Promise.all(crew.map(member => this.work(member).catch((fault) => {
         this.stopped = true // the others end after their chunk
         throw fault
@@ -59,9 +61,9 @@ export class RunUnderWay {
     return this.result()
   }
 
-  /** A member's share: block after block until none is left. */
+  /** A member's share: chunk after chunk until none is left. */
   private async work(member: Member): Promise<void> {
-    for (let task = this.stopped ? undefined : this.book.take(); task && !this.stopped; task = this.book.take()) {
+    for (let task = this.next(); task; task = this.next()) {
       try {
         if (!member.has(this.job)) await this.prepare(member)
         await this.walk(member, task)
@@ -70,6 +72,10 @@ export class RunUnderWay {
         this.recover(member, task, fault)
       }
     }
+  }
+
+  private next(): Task | undefined {
+    return this.stopped ? undefined : this.book.take(this.pace.chunk())
   }
 
   private recover(member: Member, task: Task, fault: unknown): void {
@@ -106,17 +112,14 @@ export class RunUnderWay {
   }
 
   private async walk(member: Member, task: Task): Promise<void> {
-    while (task.from < task.to && !this.stopped) {
-      const to = Math.min(task.to, task.from + this.pace.chunk())
-      const asked = performance.now()
-      const chunk = await member.walk(task.from, to, this.pace.patienceMs(to - task.from))
-      if (this.aborted) return
-      this.pace.note(to - task.from, performance.now() - asked)
-      this.book.enter(task, chunk)
-      task.from = to
-      this.judge()
-      this.report()
-    }
+    if (this.stopped) return
+    const { from, to } = task, asked = performance.now()
+    const chunk = await member.walk(from, to, this.pace.patienceMs(to - from))
+    if (this.aborted) return
+    this.pace.note(to - from, performance.now() - asked)
+    this.book.enter(task, chunk)
+    this.judge()
+    this.report()
   }
 
   private judge(): void {

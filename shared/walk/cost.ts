@@ -15,7 +15,7 @@ export { SAVED_REPLICATES_LIMIT, TABLE_LIMIT_BYTES }
 /** Seconds per unit of work, one worker, WASM, measured on two 2-core machines; the run's own pace refines the estimate. */
 const SECONDS_PER = {
   vesicleStep: 3e-9, exclusiveVesicleStep: 5.8e-9, attempt: 3.5e-8, touchedStep: 2.8e-9,
-  solvedVoxelStep: 5e-10, landingByte: 4e-8, replicate: 2e-5, sample: 3e-8, stirredSiteStep: 2.6e-9,
+  solvedVoxelStep: 1.4e-9, settledVoxelStep: 2e-10, landingByte: 5e-7, replicate: 2e-5, sample: 3e-8, stirredSiteStep: 2.6e-9,
 } as const
 /** Share of the vesicles in the box that have touched a site and must be followed, on average over a long run. */
 const TOUCHED = { held: 0.1, sealed: 0.5 } as const
@@ -75,7 +75,7 @@ function tablesOf(algorithm: Algorithm | null, size: LatticeSize): number {
 
 function setupOf(algorithm: Algorithm | null, size: LatticeSize): number {
   if (algorithm === 'touch') return size.touchSolve * SECONDS_PER.solvedVoxelStep
-  return algorithm === 'attempt' ? size.attemptSolve * SECONDS_PER.solvedVoxelStep + size.attemptBytes * SECONDS_PER.landingByte : 0
+  return algorithm === 'attempt' ? size.attemptSolve * SECONDS_PER.settledVoxelStep + size.attemptBytes * SECONDS_PER.landingByte : 0
 }
 
 function replicateOf(algorithm: Algorithm | null, scenario: Scenario, size: LatticeSize): number {

@@ -1,5 +1,5 @@
 /** The crew with real worker threads: same digest on any number of workers, cancel, crash, target, preview. */
-import { afterAll, afterEach, describe, expect, it } from 'vitest'
+import { afterAll, afterEach, describe, expect, it, vi } from 'vitest'
 import { createCrew } from '../../../workers/crew'
 import { Member, WorkerLost } from '../../../workers/member'
 import type { Crew, RunOrder, RunProgress } from '../../../workers/protocol'
@@ -7,6 +7,9 @@ import type { WorkerHandle } from '../../../workers/member'
 import { mergeAll } from '../../../shared/walk/merge'
 import { smallScenario } from '../outcome/walked'
 import { brokenThread, countedThreads, dyingAfter, heldScenario, silentThread } from './support'
+
+// A busy machine takes seconds to start a thread or a process.
+vi.setConfig({ testTimeout: 180_000 })
 
 const crews: Crew[] = []
 function ownCrew(size: number, createWorker: () => WorkerHandle): Crew {
@@ -71,10 +74,11 @@ describe('cancel', () => {
   it('answers within a second, keeps the contiguous prefix, and the prefix equals that of the full run', async () => {
     const full = await crewOf(1).run({ ...order, replicates: 400 })
     const crew = crewOf(2), stop = new AbortController()
-    let askedAt = 0
+    let askedAt = 0, doneWhenAsked = 0
     const result = await crew.run({ ...order, replicates: 400 }, { signal: stop.signal, onProgress: ({ replicatesDone }) => {
       if (replicatesDone >= 130 && !stop.signal.aborted) {
         askedAt = performance.now()
+        doneWhenAsked = replicatesDone
         stop.abort()
       }
     } })
@@ -82,6 +86,7 @@ describe('cancel', () => {
     expect(result).toMatchObject({ partial: true, replicatesAsked: 400 })
     expect(result.replicates).toBeGreaterThan(0)
     expect(result.replicates).toBeLessThan(400)
+    expect(result.replicates).toBeGreaterThanOrEqual(doneWhenAsked - 2 * 50) // at most what the two workers held is lost
     const last = result.blocks.at(-1)!
     expect(result.blocks.slice(0, -1)).toEqual(full.blocks.slice(0, result.blocks.length - 1))
     // The last block is cut short: walked again as such, it and the whole document are the same.
@@ -114,7 +119,7 @@ describe('lost workers', () => {
       createWorker().terminate()
       return brokenThread()
     })
-    await expect(crew.run(order)).rejects.toThrow(/Replicates 0 to 49 were lost with 3 workers in a row: this script is broken/)
+    await expect(crew.run(order)).rejects.toThrow(/Replicates 0 to \d+ were lost with 3 workers in a row: this script is broken/)
     expect(count.started).toBe(3)
   })
 

@@ -1,8 +1,11 @@
 /** `expect`: closed form and preview, or the reason why there is none. */
-import { describe, expect, it } from 'vitest'
+import { describe, expect, it, vi } from 'vitest'
 import type { Expectation } from '../../../scripts/support/expectation'
 import { smallScenario, walkOutcome } from '../outcome/walked'
 import { fileWith, run } from './support'
+
+// A busy machine takes seconds to start a thread or a process.
+vi.setConfig({ testTimeout: 180_000 })
 
 const documentOf = async (content: unknown) => {
   const { code, out } = await run('expect', [fileWith(content), '--json'])

@@ -1,5 +1,5 @@
 /** `simulate`: the outcome document on one stream, problems on the other, and the exit code that says which. */
-import { describe, expect, it } from 'vitest'
+import { describe, expect, it, vi } from 'vitest'
 import { OutcomeSchema, type Outcome } from '../../../shared/schemas/outcome'
 import { CONTROL } from '../../fixtures/control'
 import { buildOutcome } from '../../../shared/walk/outcome'
@@ -7,6 +7,9 @@ import { seedWords } from '../../../shared/walk/streams'
 import { compilePlan } from '../../../shared/walk/plan'
 import { engineOf, kernel, smallScenario, walkOutcome } from '../outcome/walked'
 import { fileWith, run } from './support'
+
+// A busy machine takes seconds to start a thread or a process.
+vi.setConfig({ testTimeout: 180_000 })
 
 const small = smallScenario()
 const file = fileWith(small)
