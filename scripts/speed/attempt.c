@@ -14,6 +14,8 @@ enum { LATE_CELLS = 3, DIGIT_CELLS = 256 };
 
 typedef struct { int32_t next, site; } vesicle;
 typedef struct { uint32_t offset, length; } row;
+/* What a site's class of starts and its mirror lead to. */
+typedef struct { const uint32_t *waits; const row *rows; const uint16_t *order, *mirror; } start;
 
 /* Tables of one kind of vesicle. */
 static struct {
@@ -22,10 +24,11 @@ static struct {
   const uint16_t *order, *class_of, *mirrors, *members, *member_counts;
   const row *rows;
   const double *accepts;
+  start *starts;
   int32_t wait_steps, landing_steps, rows_per_class, late_digit_count, kind_count, early_steps, tail_block_count, first_count, last_count, capacity;
 } table;
 
-static void read_tables(const char *path) {
+static void read_tables(const char *path, int sites) {
   const char *file = read_whole(path);
   const char *memory = file + 8;
   const uint32_t *attempt = (const void *)(memory + *(const uint32_t *)file);
@@ -60,6 +63,12 @@ static void read_tables(const char *path) {
   table.guide = (const uint32_t *)counts + 2;
   table.thresholds = table.guide + 256;
   table.capacity = attempt[CAPACITY];
+  table.starts = malloc(sizeof(start) * sites);
+  for (int site = 0; site < sites; site++) {
+    const uint32_t class = table.class_of[site];
+    table.starts[site] = (start){ table.waits + (size_t)class * (table.wait_steps + LATE_CELLS), table.rows + class * table.rows_per_class,
+      table.order + class * sites, table.mirrors + table.mirror_of[site] * sites };
+  }
 }
 
 /* The outcome that a draw picks from an alias row. */
@@ -113,18 +122,16 @@ static __attribute__((noinline)) stream late_wait(stream r, int32_t *wait) {
 
 /* Sends a vesicle from its site, after an attempt at step n, to its next attempt. */
 static inline __attribute__((always_inline)) stream jump(const plan *restrict p, stream r, int32_t *restrict heads, vesicle *restrict vesicles, int32_t which, int32_t n) {
-  const uint32_t site = vesicles[which].site, start = table.class_of[site], cells = table.wait_steps + LATE_CELLS;
-  int32_t wait = pick(table.waits + (size_t)start * cells, cells, next(&r)) + 1;
+  const start from = table.starts[vesicles[which].site];
+  int32_t wait = pick(from.waits, table.wait_steps + LATE_CELLS, next(&r)) + 1;
   if (wait > table.wait_steps) {
     if (wait == table.wait_steps + LATE_CELLS) return r;
     r = late_wait(r, &wait);
   }
   if (n + wait >= p->steps) return r;
   const uint32_t bin = table.bin_of[wait < table.landing_steps ? wait : table.landing_steps];
-  const row landing = table.rows[start * table.rows_per_class + 2 * bin + (wait & 1)];
-  const uint32_t rank = pick(table.cells + landing.offset, landing.length, next(&r));
-  const uint32_t image = table.order[start * p->sites + rank];
-  vesicles[which].site = table.mirrors[table.mirror_of[site] * p->sites + image];
+  const row landing = from.rows[2 * bin + (wait & 1)];
+  vesicles[which].site = from.mirror[from.order[pick(table.cells + landing.offset, landing.length, next(&r))]];
   push(heads, vesicles, n + wait, which);
   return r;
 }
@@ -191,6 +198,6 @@ static void walk(const plan *p, tally *t, int from, int to) {
 int main(int count, char **words) {
   if (count != 3) return 2;
   const plan p = read_plan(words[1]);
-  read_tables(words[2]);
+  read_tables(words[2], p.sites);
   return serve(&p, walk);
 }
