@@ -43,5 +43,5 @@ export function seedOption(text: string | undefined): string {
   if (text === undefined || text === '') return Array.from(crypto.getRandomValues(new Uint8Array(10)), byte => (byte % 36).toString(36)).join('')
   const parsed = SeedSchema.safeParse(text)
   if (parsed.success) return parsed.data
-  throw badInput('seed', `${parsed.error.issues[0]!.message} This one has ${text.length}, of at most ${SCENARIO_LIMITS.seedLength}.`)
+  throw badInput('seed', parsed.error.issues[0]!.message)
 }

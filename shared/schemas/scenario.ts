@@ -10,6 +10,12 @@ export const SCENARIO_LIMITS = {
   titleLength: 200, notesLength: 10_000, classNameLength: 60, ratePerS: 10_000,
 } as const
 
+/** Why a text cannot be a seed; null when it can. An emoji counts as one character. */
+export function seedProblem(text: string): string | null {
+  const length = [...text].length
+  return length > SCENARIO_LIMITS.seedLength ? `A seed has at most ${SCENARIO_LIMITS.seedLength} characters; this has ${length}.` : null
+}
+
 const between = (range: readonly [number, number], unit: string) =>
   z.number({ error: 'A finite number is wanted here.' }).min(range[0], `Allowed: ${range[0]} to ${range[1]} ${unit}.`).max(range[1], `Allowed: ${range[0]} to ${range[1]} ${unit}.`)
 const whole = (range: readonly [number, number], unit: string) =>

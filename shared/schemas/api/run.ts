@@ -1,6 +1,6 @@
 /** Bodies of runs. The browser sends blocks; every figure and interval is made again from them on the server. */
 import { z } from 'zod'
-import { SCENARIO_LIMITS } from '../scenario'
+import { SCENARIO_LIMITS, seedProblem } from '../scenario'
 import type { Outcome } from '../outcome'
 import type { ReplicateBlock } from '../../walk/types'
 
@@ -13,8 +13,11 @@ export const ReplicateBlockSchema: z.ZodType<ReplicateBlock> = z.strictObject({
   firstAttachment: row, events: z.array(row).max(2), exposureSteps: z.array(row).max(2), declinedExposure: z.array(row).max(2).optional(),
 })
 export const SAVED_REPLICATES_LIMIT = 50_000
-/** A seed is a text, kept exactly; 1 to 200 characters. */
-export const SeedSchema = z.string().min(1, 'A seed has at least one character.').max(SCENARIO_LIMITS.seedLength, `A seed has at most ${SCENARIO_LIMITS.seedLength} characters.`)
+/** A seed is a text, kept exactly; 1 to 200 characters as people count them. */
+export const SeedSchema = z.string().min(1, 'A seed has at least one character.').superRefine((text, context) => {
+  const message = seedProblem(text)
+  if (message) context.addIssue({ code: 'custom', message })
+})
   // Half of a surrogate pair has no UTF-8 bytes, so no digest could cover it.
   .refine(seed => !/\p{Surrogate}/u.test(seed), 'A seed is whole characters; half of one was read.')
 
