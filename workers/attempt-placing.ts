@@ -8,9 +8,20 @@ import type { KernelHost } from './host'
 
 const WORD = 4294967296
 
+/** Per site the addresses of what its class of starts and its mirror lead to: waiting row, landing rows, order, mirror. */
+function startAddresses(host: KernelHost, set: TableSet): Uint32Array {
+  const { pointer, offsets, sites } = set, classOf = new Uint16Array(host.bytes(pointer + offsets.classOf, 2 * sites).slice().buffer), mirrorOf = host.bytes(pointer + offsets.mirrorOf, sites)
+  const addresses = new Uint32Array(4 * sites)
+  classOf.forEach((kind, site) => addresses.set([
+    pointer + offsets.waits + 4 * kind * (set.waitSteps + 3), pointer + offsets.rows + 16 * kind * set.bins,
+    pointer + offsets.order + 2 * kind * sites, pointer + offsets.mirrors + 2 * mirrorOf[site]! * sites,
+  ], 4 * site))
+  return addresses
+}
+
 /** AttemptClass, field by field; zeros where the class never attaches. */
 function classWords(host: KernelHost, scratch: Scratch, plan: WalkPlan, vesicleClass: number, set: TableSet | null): { words: number[], most: number } {
-  if (!set) return { words: Array<number>(24).fill(0), most: 0 }
+  if (!set) return { words: Array<number>(23).fill(0), most: 0 }
   const at = (section: keyof TableSet['offsets']) => set.pointer + set.offsets[section]
   const arrivals = makeArrivals(host, scratch, plan, vesicleClass, set)
   const { counts } = arrivals, table = new Uint32Array(258 + counts.thresholds.length)
@@ -22,7 +33,7 @@ function classWords(host: KernelHost, scratch: Scratch, plan: WalkPlan, vesicleC
     words: [
       at('waits'), set.waitSteps, at('binOf'), set.landingSteps, at('rows'), 2 * set.bins, at('cells'), at('order'),
       at('classOf'), at('mirrorOf'), at('mirrors'), at('members'), at('memberCounts'), at('digits'), set.lateDigits,
-      scratch.place(table), arrivals.kinds, arrivals.kindCount, arrivals.early, arrivals.earlySteps, arrivals.tailBlocks, arrivals.tailBlockCount,
+      scratch.place(table), arrivals.kinds, arrivals.kindCount, arrivals.early, arrivals.earlySteps, arrivals.tailBlocks, arrivals.tailBlockCount, scratch.place(startAddresses(host, set)),
     ],
   }
 }
@@ -77,9 +88,10 @@ export function placeAttempt(host: KernelHost, plan: WalkPlan, sets: (TableSet |
   const pointer = scratch.words([
     scratch.words(classes[0]!.words), scratch.words(classes[1]!.words),
     scratch.room(heads), ripens ? scratch.room(heads) : 0, detaches ? scratch.room(heads) : 0,
-    scratch.room(16 * capacity), capacity, scratch.room(4 * plan.siteCount), scratch.place(acceptances(plan)),
+    scratch.room(8 * capacity), capacity, scratch.room(4 * plan.siteCount), scratch.place(acceptances(plan)),
     decline ? scratch.place(decline.factors) : 0, decline ? scratch.place(decline.before) : 0, scratch.room(1024),
     digitRows(host, scratch, plan.detachPerStep), digitRows(host, scratch, plan.readyPerStep),
+    detaches ? scratch.room(4 * capacity) : 0,
   ])
   return { pointer, scratch }
 }

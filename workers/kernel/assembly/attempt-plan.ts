@@ -36,6 +36,8 @@ export class AttemptClass {
   /** Row over blocks of 256 pairs of steps. */
   tailBlocks: usize
   tailBlockCount: i32
+  /** Per site the addresses {waiting row, landing rows, order, mirror} that its class and mirror lead to. */
+  starts: usize
 }
 
 /** Written by the host word by word, in this order. */
@@ -47,7 +49,7 @@ export class Attempt {
   attempts: usize
   ripenings: usize
   detachments: usize
-  /** {next i32, code u32, step of letting go i32, spare} per vesicle. */
+  /** {next i32, code u32} per vesicle: site, and 0x10000 for the second vesicle class. */
   vesicles: usize
   capacity: i32
   /** i32 [site] vesicle that sits there, or −1. */
@@ -62,4 +64,6 @@ export class Attempt {
   /** Rows of base-256 digits [site class][3][256] of the steps until letting go and until ready. */
   detachDigits: usize
   readyDigits: usize
+  /** i32 per vesicle: the step at which it lets go of its site; 0 where none ever does. */
+  leaving: usize
 }

@@ -32,26 +32,24 @@ function lateWait(kind: AttemptClass, waited: i32, at: usize): i32 {
 
 /** Sends a vesicle from its site, after an attempt at step `origin`, to its next attempt. Returns where the draws have come to. */
 @inline
-function jump(attempt: Attempt, kind: AttemptClass, siteCount: u32, stepCount: i32, vesicle: i32, record: usize, code: u32, origin: i32, draws: usize): usize {
-  const site = code & 0xFFFF
-  const start = <u32>load<u16>(kind.classOf + (<usize>site << 1))
-  const cells = <u32>(kind.waitSteps + LATE_CELLS)
-  const waited = <i32>pickFromRow(kind.waits + (<usize>(start * cells) << 2), cells, load<u32>(draws))
+function jump(attempt: Attempt, kind: AttemptClass, stepCount: i32, vesicle: i32, record: usize, code: u32, origin: i32, draws: usize): usize {
+  const start = kind.starts + (<usize>(code & 0xFFFF) << 4)
+  const waitSteps = kind.waitSteps
+  const waited = <i32>pickFromRow(<usize>load<u32>(start), <u32>(waitSteps + LATE_CELLS), load<u32>(draws))
   let at = draws + 4
   let wait = waited + 1
-  if (wait > kind.waitSteps) {
-    if (wait == kind.waitSteps + LATE_CELLS) return at
+  if (wait > waitSteps) {
+    if (wait == waitSteps + LATE_CELLS) return at
     wait = lateWait(kind, waited, at)
     at += <usize>kind.lateDigitCount << 2
   }
   const step = origin + wait
   if (step >= stepCount) return at
   const bin = <u32>load<u8>(kind.binOf + <usize>min(wait, kind.landingSteps))
-  const row = kind.rows + (<usize>(start * <u32>kind.rowsPerClass + (bin << 1) + (<u32>wait & 1)) << 3)
+  const row = <usize>load<u32>(start, 4) + (<usize>((bin << 1) + (<u32>wait & 1)) << 3)
   const rank = pickFromRow(kind.cells + (<usize>load<u32>(row) << 2), load<u32>(row, 4), load<u32>(at))
-  const image = <u32>load<u16>(kind.order + (<usize>(start * siteCount + rank) << 1))
-  const mirror = <u32>load<u8>(kind.mirrorOf + <usize>site)
-  const landed = <u32>load<u16>(kind.mirrors + (<usize>(mirror * siteCount + image) << 1))
+  const image = <u32>load<u16>(<usize>load<u32>(start, 8) + (<usize>rank << 1))
+  const landed = <u32>load<u16>(<usize>load<u32>(start, 12) + (<usize>image << 1))
   store<u32>(record, landed | (code & SECOND), 4)
   push(attempt.attempts, step, record, vesicle)
   return at + 4
@@ -83,7 +81,7 @@ function arrive(plan: Plan, attempt: Attempt, kind: AttemptClass, code: u32): vo
     const members = <u64>load<u16>(kind.memberCounts + (<usize>start << 1))
     const member = <u32>((<u64>load<u32>(at + 8) * members) >> 32)
     at += 12
-    const record = attempt.vesicles + (<usize>vesicle << 4)
+    const record = attempt.vesicles + (<usize>vesicle << 3)
     store<u32>(record, <u32>load<u16>(kind.members + (<usize>((start << 3) + member) << 1)) | code, 4)
     push(attempt.attempts, step, record, vesicle)
   }
@@ -115,14 +113,14 @@ function drawTable(table: CountTable): i32 {
 function detachAt(plan: Plan, attempt: Attempt, n: i32): void {
   let vesicle = load<i32>(attempt.detachments + (<usize>n << 2))
   while (vesicle >= 0) {
-    const record = attempt.vesicles + (<usize>vesicle << 4)
+    const record = attempt.vesicles + (<usize>vesicle << 3)
     const following = load<i32>(record)
     const code = load<u32>(record, 4)
     if (letGo(vesicle, <i32>(code & 0xFFFF), n)) {
       const kind = changetype<AttemptClass>(code & SECOND ? attempt.class1 : attempt.class0)
       if (kind.kindCount > 0) {
         if (cursor > brink) refill(cursor)
-        setCursor(jump(attempt, kind, plan.siteCount, plan.steps, vesicle, record, code, n - 1, cursor))
+        setCursor(jump(attempt, kind, plan.steps, vesicle, record, code, n - 1, cursor))
       }
     }
     vesicle = following
@@ -150,7 +148,7 @@ function attemptsAt(plan: Plan, attempt: Attempt, class0: AttemptClass, class1: 
   if (vesicle < 0) return
   let at = cursor
   while (vesicle >= 0) {
-    const record = attempt.vesicles + (<usize>vesicle << 4)
+    const record = attempt.vesicles + (<usize>vesicle << 3)
     const following = load<i32>(record)
     const code = load<u32>(record, 4)
     if (at > brink) {
@@ -169,7 +167,7 @@ function attemptsAt(plan: Plan, attempt: Attempt, class0: AttemptClass, class1: 
       setCursor(at)
       attach(plan, vesicle, site, n)
       at = cursor
-    } else at = jump(attempt, second ? class1 : class0, siteCount, stepCount, vesicle, record, code, n, at)
+    } else at = jump(attempt, second ? class1 : class0, stepCount, vesicle, record, code, n, at)
     vesicle = following
   }
   setCursor(at)

@@ -26,7 +26,7 @@ export function classOf(site: i32): i32 {
 
 @inline
 function recordOf(vesicle: i32): usize {
-  return attempt.vesicles + (<usize>vesicle << 4)
+  return attempt.vesicles + (<usize>vesicle << 3)
 }
 
 function canAttach(site: i32): bool {
@@ -53,7 +53,7 @@ function push(heads: usize, step: i32, vesicle: i32): void {
 export function settleVesicle(vesicle: i32, site: i32, siteClass: i32, n: i32, ready: bool): void {
   store<i32>(attempt.sitters + (<usize>site << 2), vesicle)
   const leaves = plan.detach(siteClass) > 0 ? n + steps(attempt.detachDigits, siteClass) : i32.MAX_VALUE
-  store<i32>(recordOf(vesicle) + 8, leaves)
+  if (attempt.leaving != 0) store<i32>(attempt.leaving + (<usize>vesicle << 2), leaves)
   if (!ready) {
     waiting++
     const ripe = n + steps(attempt.readyDigits, siteClass)
@@ -129,7 +129,7 @@ export function ripenSites(n: i32): void {
     store<u8>(plan.siteState + <usize>site, READY)
     waiting--
     noteRipened(classOf(site), n)
-    const leaves = load<i32>(record, 8)
+    const leaves = attempt.leaving != 0 ? load<i32>(attempt.leaving + (<usize>vesicle << 2)) : i32.MAX_VALUE
     if (leaves < plan.steps) push(attempt.detachments, leaves, vesicle)
     vesicle = following
   }
