@@ -1,6 +1,5 @@
 /** Options of the command lines, strictly read: what is not understood is refused by name. */
 import { parseArgs } from 'node:util'
-import { SCENARIO_LIMITS } from '../../shared/schemas/scenario'
 import { SeedSchema } from '../../shared/schemas/api/run'
 import type { AskedAlgorithm } from '../../shared/walk/types'
 import { badInput } from './exits'

@@ -94,7 +94,7 @@ describe('a seed', () => {
     const path = `/api/scenarios/${scenarioId}/runs`
     const run = await runBody(SMALL)
     const long = await person.post<Problem>(path, { ...run, seed: 'x'.repeat(5000) }, { 'idempotency-key': 'long' })
-    expect([long.status, long.body.errors]).toEqual([422, [{ path: 'seed', message: 'A seed has at most 200 characters.' }]])
+    expect([long.status, long.body.errors]).toEqual([422, [{ path: 'seed', message: 'A seed has at most 200 characters; this has 5000.' }]])
     const seed = ` 9007199254740993 🌊 e\u0301 ${'x'.repeat(150)} `
     const kept = await person.post<{ seed: string }>(path, await runBody(SMALL, { seed }), { 'idempotency-key': 'odd' })
     expect([kept.status, kept.body.seed]).toEqual([201, seed])
