@@ -27,7 +27,7 @@ export default async function writeProblem(error: unknown, event: H3Event) {
     'cache-control': 'no-store',
     ...(body.status === 401 && { 'www-authenticate': 'Session realm="Moorage"' }),
     ...(refusal.parts.allow && { allow: refusal.parts.allow }),
-    ...(body.retryAfterSeconds !== undefined && { 'retry-after': String(Math.max(1, Math.ceil(body.retryAfterSeconds))) }),
+    ...(body.retryAfterSeconds !== undefined && { 'retry-after': Math.max(1, Math.ceil(body.retryAfterSeconds)) }),
     // What is left of an oversized body is not read for the sake of the next request.
     ...(body.status === 413 && { connection: 'close' }),
   })
