@@ -126,7 +126,7 @@ export interface DensitySection {
 export function densitySection(plan: WalkPlan, timeS: number): DensitySection {
   const steps = Math.max(1, Math.min(plan.steps, Math.round(timeS / plan.stepS)))
   const offsets = hopOffsets(plan.nx, plan.ny)
-  const probability = plan.classOfSite.reduce<number[]>((row, siteClass) => [...row, meanProbability(plan, siteClass)], [])
+  const probability = Array.from(plan.classOfSite, siteClass => meanProbability(plan, siteClass))
   const empty = new Float64Array(plan.siteCount).fill(1 - plan.initialFill)
   let now = Float64Array.from(plan.flags, flag => flag === FLAG.free ? 1 : 0)
   let next = new Float64Array(now.length)

@@ -2,13 +2,15 @@
 import { wrap, type Remote } from 'comlink'
 import { closedForm } from '#shared/kinetics/closed-form'
 import { stepSeconds, type Scenario } from '#shared/schemas/scenario'
+import { voxelCounts } from '#shared/walk/frame'
 import { sceneRefusal, type DensitySection, type SceneFrame, type ScenePlace } from '~~/workers/scene'
 import type { SceneOffices } from '~~/workers/scene.worker'
 
 /** Frames a second while it plays: enough to follow a vesicle by eye. */
 const FRAMES_PER_S = 12
-/** The first picture is not further on than this [steps]. */
+/** The first picture is not further on than this, in steps and in voxel-steps of its density (about 2 s of a worker). */
 const MOST_FIRST_STEPS = 400
+const MOST_VOXEL_STEPS = 1.5e8
 export const SCENE_SPEEDS = [1, 5, 25] as const
 
 /** A quarter of the quicker kind's τ: early enough to see the neighbourhood emptied [s]. */
@@ -16,7 +18,8 @@ function firstTime(scenario: Scenario): number {
   const taus = closedForm(scenario).classes.map(kind => kind.tauS).filter((tau): tau is number => tau !== null)
   const step = stepSeconds(scenario.medium)
   const wanted = taus.length > 0 ? Math.min(...taus) / 4 : scenario.schedule.durationS / 10
-  return Math.min(Math.max(wanted, step), MOST_FIRST_STEPS * step, scenario.schedule.durationS)
+  const most = Math.max(1, Math.min(MOST_FIRST_STEPS, Math.floor(MOST_VOXEL_STEPS / Math.max(1, voxelCounts(scenario).voxels))))
+  return Math.min(Math.max(wanted, step), most * step, scenario.schedule.durationS)
 }
 
 export function useTerminalScene(scenario: () => Scenario, seed: () => string) {
