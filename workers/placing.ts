@@ -79,11 +79,29 @@ export function placeTable(host: KernelHost, table: CountTable | null | undefine
   return host.place(words)
 }
 
+/** Sites by face (6·voxel + direction), open addressing at most half full: {mask, 0}, then (face, site) pairs; −1 where empty. A dense array would be 24 bytes a voxel. */
+function siteTable(plan: WalkPlan): Int32Array {
+  let capacity = 4
+  while (capacity < 2 * plan.siteCount) capacity *= 2
+  const table = new Int32Array(2 + 2 * capacity).fill(-1), mask = capacity - 1
+  table.set([mask, 0])
+  for (const voxel of new Set(plan.voxelOfSite)) {
+    for (let face = 6 * voxel; voxel >= 0 && face < 6 * voxel + 6; face++) {
+      const site = plan.siteBehind[face]!
+      if (site < 0) continue
+      let slot = (Math.imul(face, 0x9E3779B1) >>> 12) & mask
+      while (table[2 + 2 * slot]! >= 0) slot = (slot + 1) & mask
+      table.set([face, site], 2 + 2 * slot)
+    }
+  }
+  return table
+}
+
 /** Writes a plan into memory. */
 export function placePlan(host: KernelHost, plan: WalkPlan): PlacedPlan {
   const boundary = boundaryOf(plan), tables = bathTables(plan, boundary.length), releases = plan.releases
   const addresses = [
-    host.place(plan.flags), host.place(plan.siteBehind), host.place(plan.voxelOfSite), host.place(plan.classOfSite),
+    host.place(plan.flags), host.place(siteTable(plan)), host.place(plan.voxelOfSite), host.place(plan.classOfSite),
     host.place(plan.sampleSteps), host.place(Int32Array.from(releases, one => one.step)), host.place(Float64Array.from(releases, one => one.fraction)),
     host.place(freeVoxelsOf(plan)), host.place(boundary), host.place(hopOffsets(plan.nx, plan.ny)),
     placeTable(host, tables.start[0]), placeTable(host, tables.start[1]), placeTable(host, tables.inflow[0]), placeTable(host, tables.inflow[1]), placeTable(host, tables.gap),
@@ -95,8 +113,8 @@ export function placePlan(host: KernelHost, plan: WalkPlan): PlacedPlan {
   const pointer = host.allocate(bytes)
   host.doubles(pointer, doubles.length).set(doubles)
   host.words(pointer + doubles.length * 8, words.length).set(words)
-  // 24 bytes a voxel for what lies behind its faces, 4 for the list of free ones, 2 for flags.
-  return { pointer, bytes: plan.flags.length * 30, release: () => [pointer, ...addresses].forEach(address => address !== 0 && host.release(address)) }
+  // 4 bytes a voxel for the list of free ones, 2 for flags.
+  return { pointer, bytes: plan.flags.length * 6, release: () => [pointer, ...addresses].forEach(address => address !== 0 && host.release(address)) }
 }
 
 /** Plans kept in memory at a time (a person compares a few), and the bytes beyond which only the newest stays. */

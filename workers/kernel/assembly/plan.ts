@@ -53,7 +53,7 @@ export class Plan {
   ny: i32
   nz: i32
 
-  /** u8[cellCount], i32[6 cellCount], i32[siteCount], u8[siteCount]. */
+  /** u8[cellCount]; mask, 0, then (face = 6 voxel + direction, site) pairs, -1 where empty; i32[siteCount]; u8[siteCount]. */
   flags: usize
   siteBehind: usize
   voxelOfSite: usize

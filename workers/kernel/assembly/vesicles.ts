@@ -103,9 +103,21 @@ export function placeVesicles(plan: Plan): void {
   }
 }
 
+/** Site behind a face of a voxel, or -1: open addressing in (face, site) pairs, as workers/placing.ts lays them. */
+function siteBehind(plan: Plan, face: i32): i32 {
+  const table = plan.siteBehind, mask = load<i32>(table)
+  let slot = <i32>(<u32>(face * 0x9E3779B1) >>> 12) & mask
+  let key = load<i32>(table + 8 + (<usize>slot << 3))
+  while (key >= 0 && key != face) {
+    slot = (slot + 1) & mask
+    key = load<i32>(table + 8 + (<usize>slot << 3))
+  }
+  return key < 0 ? -1 : load<i32>(table + 12 + (<usize>slot << 3))
+}
+
 /** A hop onto a voxel that carries sites: true when the vesicle attaches. */
 function hits(plan: Plan, voxel: i32, direction: i32, vesicleClass: i32, n: i32): bool {
-  const site = load<i32>(plan.siteBehind + (<usize>(6 * voxel + direction) << 2))
+  const site = siteBehind(plan, 6 * voxel + direction)
   if (site < 0 || stateOfSite(site) != EMPTY) return false
   const siteClass = <i32>load<u8>(plan.classOfSite + site)
   if (!chance(plan.attach(siteClass, vesicleClass) * factor)) return false
