@@ -1,7 +1,7 @@
 /** The jobs that are timed, as scenario documents: lengths and densities of our own, ratios in voxels as the rows name them. */
 import { ScenarioSchema, type Scenario, type ScenarioInput } from '../../shared/schemas/scenario'
 
-const base = { format: 'moorage-scenario', version: 1, notes: '', vesicles: [{ name: 'vesicle', share: 1 }] } as const
+const base = { format: 'moorage-scenario', version: 1, notes: '', vesicles: [{ name: 'vesicle', share: 1 }] } satisfies Partial<ScenarioInput>
 /** ρa³ = 0.201386 at 50 nm; Δt = 3.0682 ms, so that 2 s are 652 steps. */
 const DENSE = { spacingNm: 50, diffusionUm2PerS: 0.135802, densityPerUm3: 1611.088 }
 const FLOOR_54 = { shape: 'plate', rows: 9, columns: 6, faces: 1, classLayout: 'interleaved' } as const
