@@ -7,6 +7,8 @@ export const useSessionStore = defineStore('session', () => {
   const me = ref<Me | null>(null)
   /** False until the first answer, so that a page can tell "signed out" from "not known yet". */
   const known = ref(false)
+  /** Why it is not known: the server or its database is away. */
+  const away = shallowRef<Refusal | null>(null)
   const chosenBench = useCookie<string | null>('moorage-bench', { default: () => null, maxAge: 31_536_000, sameSite: 'lax', path: '/' })
 
   const bench = computed(() => me.value?.benches.find(one => one.benchId === chosenBench.value) ?? me.value?.benches[0] ?? null)
@@ -17,10 +19,14 @@ export const useSessionStore = defineStore('session', () => {
     try {
       me.value = await api<Me>('/api/account/me')
     } catch (thrown) {
-      const { status } = refusalOf(thrown)
-      if (status !== 401) return // the server is away: keep what is known, ask again at the next page
+      const refusal = refusalOf(thrown)
+      if (refusal.status !== 401) { // the server is away: keep what is known, ask again at the next page
+        away.value = refusal
+        return
+      }
       me.value = null
     }
+    away.value = null
     known.value = true
   }
   async function signIn(given: { mail: string, passPhrase: string }): Promise<void> {
@@ -40,5 +46,5 @@ export const useSessionStore = defineStore('session', () => {
     chosenBench.value = benchId
   }
 
-  return { me, known, bench, role, allows, load, signIn, register, signOut, chooseBench }
+  return { me, known, away, bench, role, allows, load, signIn, register, signOut, chooseBench }
 })
