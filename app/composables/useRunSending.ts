@@ -43,7 +43,7 @@ export function useRunSending(settled: (run: LocalRun) => void, isMine: (run: Lo
   }
 
   async function send(run: LocalRun): Promise<void> {
-    if (run.send.state === 'sending' || run.send.state === 'sent' || !run.outcome || !run.engine || run.asked.scenarioId === null || run.asked.revision === null) return
+    if (run.state === 'running' || run.send.state === 'sending' || run.send.state === 'sent' || !run.outcome || !run.engine || run.asked.scenarioId === null || run.asked.revision === null) return
     clearTimeout(timers.get(run.localId))
     if (!isMine(run)) {
       run.send = { ...run.send, state: 'unsent', reason: REASONS.sign_in_first! }

@@ -79,10 +79,8 @@ export const useRunsStore = defineStore('runs', () => {
   }
   async function finished(run: LocalRun, blocks: ReplicateBlock[]) {
     blocksOf.set(run.localId, blocks)
-    const belongs = run.asked.scenarioId !== null && run.asked.revision !== null && run.userId !== 'nobody'
-    run.send = { ...run.send, state: belongs ? 'unsent' : 'local' }
     await keep(run, blocks)
-    if (belongs) await sending.send(run)
+    if (run.send.state === 'unsent') await sending.send(run)
   }
 
   /** Keeps the contiguous prefix of replicates and calls it partial. */

@@ -74,8 +74,19 @@ export function newLocalRun(start: RunStart, userId: string, startedAt: string):
     localId: makeLocalId(), userId, asked: { ...start, scenario, seed: start.seed?.trim() || makeSeed(), purpose: start.purpose ?? 'run' }, startedAt,
     state: 'running', stopping: false, replicatesDone: 0, elapsedMs: 0, remainingMs: null, workers: 0, precision: [], outcome: null, engine: null, landingError: 0,
     durationMs: 0, problem: null, finishedAt: null, kept: 'none',
-    send: { state: 'local', reason: null, runId: null, number: null, savedAt: null },
+    send: { state: belongsToBench(start, userId) ? 'unsent' : 'local', reason: null, runId: null, number: null, savedAt: null },
   }
+}
+
+/** Whether its outcome goes to the bench: a run of a saved revision by somebody who is signed in. */
+export const belongsToBench = (start: RunStart, userId: string): boolean =>
+  (start.purpose ?? 'run') === 'run' && start.scenarioId !== null && start.revision !== null && userId !== 'nobody'
+
+/** Finished, and where it went is settled for now: saved, refused, kept for later, or never meant to be sent. */
+export function isSettled(run: Pick<LocalRun, 'state' | 'outcome' | 'send'>): boolean {
+  if (run.state === 'running') return false
+  if (run.outcome === null) return true
+  return run.send.state !== 'sending' && !(run.send.state === 'unsent' && run.send.reason === null)
 }
 
 /** Whether leaving the page would lose something: a run under way, or an outcome that neither device nor server keeps. */

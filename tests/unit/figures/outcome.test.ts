@@ -5,7 +5,7 @@ import { buildOutcome } from '../../../shared/walk/outcome'
 import { compilePlan } from '../../../shared/walk/plan'
 import { seedWords } from '../../../shared/walk/streams'
 import { OutcomeDesk } from '../../../app/utils/outcomeDesk'
-import { newLocalRun, makeLocalId, makeSeed, wantedReplicates, wouldBeLost } from '../../../app/utils/localRun'
+import { isSettled, newLocalRun, makeLocalId, makeSeed, wantedReplicates, wouldBeLost } from '../../../app/utils/localRun'
 import { compareOutcomes } from '../../../app/utils/outcomeComparison'
 import { curvesCsv, firstAttachmentCsv, replicatesCsv } from '../../../app/utils/outcomeFiles'
 import { outcomeClosedForm, outcomeKinds, outcomeWalk } from '../../../app/utils/outcomeSeries'
@@ -167,6 +167,19 @@ describe('runs on this device', () => {
     expect(wouldBeLost({ ...run, state: 'done', outcome, kept: 'device' })).toBe(false)
     expect(wouldBeLost({ ...run, state: 'done', outcome, kept: 'memory', send: { ...run.send, state: 'sent' } })).toBe(false)
     expect(wouldBeLost({ ...run, state: 'failed', outcome: null })).toBe(false)
+  })
+  it('are settled only when it is known where their outcome went', () => {
+    const own = newLocalRun({ ...start, scenarioId: 's', revision: 1 }, 'u', '')
+    const done = { ...own, state: 'done' as const, outcome }
+    expect(own.send.state).toBe('unsent')
+    expect(isSettled({ ...own, outcome })).toBe(false)
+    expect(isSettled(done)).toBe(false)
+    expect(isSettled({ ...done, send: { ...done.send, state: 'sending' } })).toBe(false)
+    for (const state of ['sent', 'refused', 'file'] as const) expect(isSettled({ ...done, send: { ...done.send, state } })).toBe(true)
+    expect(isSettled({ ...done, send: { ...done.send, reason: 'No connection.' } })).toBe(true)
+    expect(isSettled({ ...done, outcome: null })).toBe(true)
+    expect(isSettled({ ...newLocalRun(start, 'u', ''), state: 'done', outcome })).toBe(true)
+    expect(newLocalRun({ ...start, scenarioId: 's', revision: 1, purpose: 'again' }, 'u', '').send.state).toBe('local')
   })
   it('repeat the blocks of an outcome that stopped early', () => {
     expect(wantedReplicates({ replicates: 200, ranges: [{ from: 0, to: 50 }, { from: 50, to: 81 }] })).toBe(81)
