@@ -22,7 +22,8 @@ beforeAll(async () => {
 })
 afterAll(async () => {
   await server?.stop()
-  await database?.drop()
+  // After a failure the cluster may be down; its folder goes in any case.
+  await database?.drop().catch(() => {})
   cluster?.end()
 })
 
@@ -48,19 +49,27 @@ it('loses no acknowledged run in ten kills, answers 503 in between, and recovers
       await pause(5)
     }
   })
-  for (let kill = 0; kill < KILLS; kill += 1) {
-    const before = acknowledged.size
-    for (let i = 0; i < 200 && acknowledged.size < before + 4; i += 1) await pause(50)
-    expect(acknowledged.size, `saving went on before kill ${kill + 1}`).toBeGreaterThan(before)
-    await pause(Math.random() * 40)
-    await killCluster(cluster.folder)
-    const health = await lead.get<{ code: string }>('/api/health')
-    expect([health.status, health.body.code]).toEqual([503, 'database_away'])
-    expect(Number(health.headers.get('retry-after'))).toBeGreaterThan(0)
-    await startCluster(cluster.folder, { port: cluster.port, durable: true })
+  try {
+    for (let kill = 0; kill < KILLS; kill += 1) {
+      const before = acknowledged.size
+      for (let i = 0; i < 600 && acknowledged.size < before + 3; i += 1) await pause(50)
+      expect(acknowledged.size, `saving went on before kill ${kill + 1}; answers so far ${JSON.stringify([...statuses])}`).toBeGreaterThan(before)
+      await pause(Math.random() * 40)
+      await killCluster(cluster.folder)
+      // A back end may outlive its postmaster by a moment, and answers truthfully until then.
+      let health = await lead.get<{ code: string }>('/api/health')
+      for (let i = 0; i < 100 && health.status === 200; i += 1) {
+        await pause(50)
+        health = await lead.get<{ code: string }>('/api/health')
+      }
+      expect([health.status, health.body.code]).toEqual([503, 'database_away'])
+      expect(Number(health.headers.get('retry-after'))).toBeGreaterThan(0)
+      await startCluster(cluster.folder, { port: cluster.port, durable: true })
+    }
+  } finally {
+    going = false
+    await Promise.all(writers)
   }
-  going = false
-  await Promise.all(writers)
   for (let i = 0; i < 100 && (await lead.get('/api/health')).status !== 200; i += 1) await pause(100)
   expect((await lead.get('/api/account/me')).status).toBe(200)
 
@@ -73,4 +82,4 @@ it('loses no acknowledged run in ten kills, answers 503 in between, and recovers
   expect(rows.map(row => row.run_id).sort()).toEqual([...acknowledged.values()].sort())
   expect(rows.every(row => row.whole)).toBe(true)
   console.log(`${KILLS} kills: ${acknowledged.size} runs acknowledged and stored; answers ${JSON.stringify(Object.fromEntries(statuses))}`)
-}, 240_000)
+}, 420_000)
