@@ -61,6 +61,8 @@ function arrive(plan: Plan, attempt: Attempt, kind: AttemptClass, code: u32): vo
   const table = changetype<CountTable>(kind.counts)
   const count = min(drawTable(table), attempt.capacity - plan.siteCount - vesicleCount)
   const first = vesicleCount
+  const earlySteps = kind.earlySteps, stepCount = plan.steps
+  const tailBlocks = kind.tailBlocks, tailBlockCount = <u32>kind.tailBlockCount, lateDigits = kind.lateDigits
   let at = cursor
   for (let vesicle = first; vesicle < first + count; vesicle++) {
     if (at > brink) {
@@ -71,12 +73,21 @@ function arrive(plan: Plan, attempt: Attempt, kind: AttemptClass, code: u32): vo
     const start = picked >> 2
     const type = picked & 3
     let step: i32
-    if (type == EARLY) step = pickFromRow(kind.early + (<usize>(start * <u32>kind.earlySteps) << 2), kind.earlySteps, load<u32>(at + 4))
-    else if (type == EVEN) step = kind.earlySteps + <i32>((<u64>load<u32>(at + 4) * <u64>(plan.steps - kind.earlySteps)) >> 32)
+    if (type == EARLY) step = pickFromRow(kind.early + (<usize>(start * <u32>earlySteps) << 2), earlySteps, load<u32>(at + 4))
+    else if (type == EVEN) step = earlySteps + <i32>((<u64>load<u32>(at + 4) * <u64>(stepCount - earlySteps)) >> 32)
     else {
-      setCursor(at + 4)
-      step = tailStep(kind, type - 2, plan.steps)
-      at = cursor - 8
+      // In the exponential tail, by block and place in the block; drawn again when past the end.
+      const first = earlySteps + <i32>type - 2
+      do {
+        if (at > brink) {
+          refill(at)
+          at = cursor
+        }
+        const block = <i32>pickFromRow(tailBlocks, tailBlockCount, load<u32>(at + 4))
+        step = first + 2 * ((block << 8) + <i32>pickFromRow(lateDigits, DIGIT_CELLS, load<u32>(at + 8)))
+        at += 8
+      } while (step >= stepCount)
+      at -= 4
     }
     const members = <u64>load<u16>(kind.memberCounts + (<usize>start << 1))
     const member = <u32>((<u64>load<u32>(at + 8) * members) >> 32)
@@ -87,18 +98,6 @@ function arrive(plan: Plan, attempt: Attempt, kind: AttemptClass, code: u32): vo
   }
   setCursor(at)
   setVesicleCount(first + count)
-}
-
-/** A first attempt in the exponential tail, by block and place in the block; drawn again when past the end. */
-function tailStep(kind: AttemptClass, parity: i32, stepCount: i32): i32 {
-  let step = stepCount
-  while (step >= stepCount) {
-    const block = <i32>pickFromRow(kind.tailBlocks, kind.tailBlockCount, draw())
-    const pair = (block << 8) + <i32>pickFromRow(kind.lateDigits, DIGIT_CELLS, draw())
-    step = kind.earlySteps + parity + 2 * pair
-  }
-  if (cursor > brink) refill(cursor)
-  return step
 }
 
 function drawTable(table: CountTable): i32 {
