@@ -1,7 +1,7 @@
 /** The main job by keyboard alone: to the field, a number, what to expect, the run, the outcome; focus is always seen. */
 import { afterAll, beforeAll, expect, it } from 'vitest'
 import type { Page } from 'playwright-core'
-import { expectQuiet } from './support/browser'
+import { eventually, expectQuiet, words } from './support/browser'
 import { atSavedRun, Pier } from './support/bench'
 
 let pier: Pier
@@ -40,7 +40,7 @@ it('goes from the field to the outcome with keys only, and the estimate doubles 
   await page.keyboard.press('Control+a')
   await page.keyboard.type('0.15')
   await page.keyboard.press('Enter')
-  await expect.poll(() => page.locator('h1').textContent()).toMatch(/quick sites should double against revision 1: 0\.833 s to 1\.67 s by the closed form/)
+  await eventually(() => words(page.locator('h1'))).toMatch(/quick sites should double against revision 1: 0\.833 s to 1\.67 s by the closed form/)
   await tabTo(page, 'seed')
   await page.keyboard.type('by keys')
   await page.keyboard.press('Control+Enter')
@@ -50,7 +50,7 @@ it('goes from the field to the outcome with keys only, and the estimate doubles 
   expect(run.seed).toBe('by keys')
   const { valueS, lowS, highS } = run.outcome.classes[0]!.tau
   expect(Math.abs(valueS! - 1 / 0.6)).toBeLessThan(highS! - lowS!) // about four standard errors
-  await expect.poll(() => page.locator('h1').textContent()).toContain('The walk agrees with the closed form')
+  await eventually(() => words(page.locator('h1'))).toContain('The walk agrees with the closed form')
   await page.keyboard.press('Tab')
   expect(await focus(page)).toMatchObject({ ring: true })
   expectQuiet(seen)
@@ -66,7 +66,7 @@ it('skips to the content first and lists its keys', async () => {
   await page.keyboard.press('?')
   const sheet = page.getByRole('dialog')
   await sheet.waitFor()
-  expect(await sheet.textContent()).toContain('open this list')
+  expect(await words(sheet)).toContain('open this list')
   await page.keyboard.press('Escape')
   await sheet.waitFor({ state: 'hidden' })
   expectQuiet(seen)

@@ -5,7 +5,7 @@ import { join } from 'node:path'
 import { afterAll, beforeAll, expect, it } from 'vitest'
 import type { Outcome } from '../../shared/schemas/outcome'
 import type { Scenario } from '../../shared/schemas/scenario'
-import { expectQuiet } from './support/browser'
+import { expectQuiet, words } from './support/browser'
 import { atSavedRun, box, enter, goButton, Pier } from './support/bench'
 import { runScript } from './support/world'
 
@@ -34,7 +34,7 @@ it('gives the same digest in Chromium, again in Chromium, and in Node with one a
   await page.getByRole('button', { name: 'Run again here' }).click()
   const verdict = page.locator('dt').filter({ hasText: 'The two outcomes' }).locator('xpath=following-sibling::dd[1]')
   await verdict.waitFor()
-  expect((await verdict.textContent())?.trim()).toBe('identical')
+  expect(await words(verdict)).toBe('identical')
   expect(await pier.savedRuns(scenarioId)).toHaveLength(1)
   expect(run.outcome.engine.algorithm).toBe('attempt')
   const [one, two] = [await inNode(document, 'tide 7', 120, 1), await inNode(document, 'tide 7', 120, 2)]
@@ -88,10 +88,10 @@ it('runs a single replicate without a band and says why', async () => {
   await goButton(page).click()
   const run = await pier.run(await atSavedRun(page))
   expect(run.outcome.ratio).toMatchObject({ low: null, high: null })
-  expect(await page.locator('figcaption').first().textContent()).toContain('One replicate: no band is drawn, because a spread needs at least two.')
+  expect(await words(page.locator('figcaption').first())).toContain('One replicate: no band is drawn, because a spread needs at least two.')
   expect(await page.locator('figure svg path.sim').first().getAttribute('d')).toMatch(/^M/)
   expect(await page.locator('figure').first().locator('svg path.sim-band, svg path.sim-spread').count()).toBe(0)
-  expect(await page.locator('h1').textContent()).toMatch(/from one replicate: it has no interval and decides nothing/)
+  expect(await words(page.locator('h1'))).toMatch(/from one replicate: it has no interval and decides nothing/)
   expectQuiet(seen)
   await leave()
 })

@@ -1,14 +1,14 @@
 /** Saving: once and only once, over a lost connection, a lost answer, a closed tab, a full disk; and a trainee's run, which is not saved and says why. */
 import { afterAll, beforeAll, expect, it } from 'vitest'
 import type { BrowserContext, Page } from 'playwright-core'
-import { expectQuiet, visit } from './support/browser'
+import { expectQuiet, visit, words } from './support/browser'
 import { atSavedRun, box, enter, goButton, Pier } from './support/bench'
 
 const OFFLINE = [/ERR_INTERNET_DISCONNECTED/, /ERR_FAILED/, /ERR_CONNECTION_RESET/]
 /** Seconds of step-by-step walk: long enough to lose the connection meanwhile. */
 const SLOW = { ribbon: { shape: 'plate', rows: 2, columns: 3, faces: 2, classLayout: 'interleaved' }, reservoir: { supply: 'held', marginSites: 6 }, schedule: { durationS: 20, sampleEveryMs: 100, initialFill: 0 } } as const
 const state = (page: Page) => page.getByText(/Not yet sent\.|^\s*Saved \d\d:\d\d|Not saved on the bench/).first()
-const said = async (page: Page) => (await page.locator('main').textContent() ?? '').replace(/\s+/g, ' ')
+const said = (page: Page) => words(page.locator('main'))
 
 let pier: Pier
 beforeAll(async () => {
@@ -18,7 +18,7 @@ afterAll(() => pier?.close())
 
 async function go(page: Page, options: { seed: string, replicates?: number, step?: boolean }) {
   if (options.replicates) await enter(page, 'replicates', String(options.replicates))
-  if (options.step) await page.locator('[data-path="algorithm"] label').filter({ hasText: /^step$/ }).click()
+  if (options.step) await page.locator('[data-path="algorithm"] label').filter({ hasText: /^\s*step\s*$/ }).click()
   await box(page, 'seed').fill(options.seed)
   await goButton(page).click()
   await page.waitForURL('**/runs/**')
@@ -32,7 +32,7 @@ it('saves a finished run and says when', async () => {
   await go(page, { seed: 'plain' })
   const runId = await atSavedRun(page)
   expect(await pier.savedRuns(scenarioId)).toMatchObject([{ runId, partial: false, replicates: 200 }])
-  await page.locator('dd').filter({ hasText: /^audited$/ }).waitFor({ timeout: 60_000 })
+  await page.locator('dd').filter({ hasText: /^\s*audited\s*$/ }).waitFor({ timeout: 60_000 })
   expect(await said(page)).toMatch(/Saved\s*today, \d\d:\d\d, by Lead Person/)
   expectQuiet(seen)
   await leave()
@@ -48,7 +48,7 @@ it('keeps a run that finishes without a connection and sends it once when the co
   await page.getByText('No connection.').first().waitFor()
   await page.getByText('Not yet sent.').waitFor()
   expect(await said(page)).toMatch(/Not yet sent\. No connection; it is sent when the connection is back\. It is kept on this device\./)
-  expect(await page.locator('p.kind').textContent()).toMatch(/closed form|Undecided/)
+  expect(await words(page.locator('p.kind'))).toMatch(/closed form|Undecided/)
   expect(await pier.savedRuns(scenarioId)).toEqual([])
   await context.setOffline(false)
   await page.getByText(/Saved \d\d:\d\d/).waitFor()
@@ -137,7 +137,7 @@ it('does not save a trainee\'s run and says why before and after', async () => {
   await go(page, { seed: 'not yet' })
   await state(page).waitFor()
   expect(await said(page)).toMatch(/Not saved on the bench.*(Trainees write down what they expect first|predictions come with the ledger)/i)
-  expect(await page.locator('p.kind').textContent()).toMatch(/closed form|Undecided/)
+  expect(await words(page.locator('p.kind'))).toMatch(/closed form|Undecided/)
   expect(await pier.savedRuns(scenarioId)).toEqual([])
   expectQuiet(seen)
   await leave()

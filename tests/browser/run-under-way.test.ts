@@ -4,7 +4,7 @@ import type { Page } from 'playwright-core'
 import { ScenarioSchema } from '../../shared/schemas/scenario'
 import { blockDigest } from '../../shared/walk/digest'
 import { runInNode } from '../../workers/node'
-import { alive, expectQuiet } from './support/browser'
+import { alive, eventually, expectQuiet, words } from './support/browser'
 import { atSavedRun, box, CONTROL, enter, goButton, Pier } from './support/bench'
 
 const SLACK = 4
@@ -19,7 +19,7 @@ beforeAll(async () => {
 afterAll(() => pier?.close())
 
 /** Replicates done by the sentence on top. */
-const done = async (page: Page) => Number(/^\s*([\d\s,.\u202f\u00a0]+?) of /.exec(await page.locator('h1').textContent() ?? '')?.[1]?.replace(/\D/g, '') ?? Number.NaN)
+const done = async (page: Page) => Number(/^\s*([\d\s,.\u202f\u00a0]+?) of /.exec(await words(page.locator('h1')))?.[1]?.replace(/\D/g, '') ?? Number.NaN)
 const curve = (page: Page) => page.locator('figure svg path.sim').first().getAttribute('d')
 
 async function setGoing(seed: string) {
@@ -27,7 +27,7 @@ async function setGoing(seed: string) {
   const seat = await pier.seat(`/scenarios/${scenarioId}`)
   await enter(seat.page, 'replicates', String(REPLICATES))
   await box(seat.page, 'seed').fill(seed)
-  await seat.page.locator('[data-path="algorithm"] label').filter({ hasText: /^step$/ }).click()
+  await seat.page.locator('[data-path="algorithm"] label').filter({ hasText: /^\s*step\s*$/ }).click()
   await goButton(seat.page).click()
   await seat.page.waitForURL('**/runs/under-way/*')
   await seat.page.locator('figure svg path.sim').first().waitFor()
@@ -37,10 +37,10 @@ async function setGoing(seed: string) {
 it('grows with its band, answers meanwhile, stops within a second and keeps the prefix as partial', async () => {
   const { page, seen, leave, scenarioId, document } = await setGoing('to be stopped')
   const [early, first] = [await done(page), await curve(page)]
-  await expect.poll(() => done(page)).toBeGreaterThan(early)
-  await expect.poll(() => curve(page)).not.toBe(first)
+  await eventually(() => done(page)).toBeGreaterThan(early)
+  await eventually(() => curve(page)).not.toBe(first)
   expect(await page.locator('figure svg path.sim-band').first().getAttribute('d')).toMatch(/^M/)
-  await expect.poll(() => page.locator('figure canvas').count()).toBeGreaterThan(0)
+  await eventually(() => page.locator('figure canvas').count()).toBeGreaterThan(0)
 
   const reactions = await page.evaluate(async () => {
     const took: number[] = []
@@ -66,7 +66,7 @@ it('grows with its band, answers meanwhile, stops within a second and keeps the 
   expect(stoppedMs).toBeLessThan(1000 * SLACK)
 
   const run = await pier.run(await atSavedRun(page))
-  expect(await page.locator('p.kind').textContent()).toMatch(/partial\s*, \d+ of 20000 replicates/)
+  expect(await words(page.locator('p.kind'))).toMatch(/partial\s*, \d+ of 20.?000 replicates/)
   expect(run).toMatchObject({ partial: true, replicatesAsked: REPLICATES, replicates: run.outcome.blocks.at(-1)!.to })
   expect(run.replicates).toBeLessThan(REPLICATES)
   expect(run.outcome.blocks.map(block => block.from)).toEqual([0, ...run.outcome.blocks.slice(0, -1).map(block => block.to)])
@@ -84,9 +84,9 @@ it('goes on while its person moves about, and warns before the tab is closed', a
   await page.getByRole('navigation').first().getByRole('link', { name: 'Bench', exact: true }).click()
   await page.waitForURL('**/bench')
   const line = page.locator('section').filter({ has: page.getByRole('heading', { name: 'Under way' }) }).locator('li')
-  const replicates = async () => Number(/(\d+) of 20000 replicates/.exec(await line.textContent() ?? '')?.[1])
+  const replicates = async () => Number(/(\d+) of 20.?000 replicates/.exec(await words(line))?.[1])
   const before = await replicates()
-  await expect.poll(replicates).toBeGreaterThan(before)
+  await eventually(replicates).toBeGreaterThan(before)
 
   const warned = page.waitForEvent('dialog')
   await page.close({ runBeforeUnload: true })
@@ -94,7 +94,7 @@ it('goes on while its person moves about, and warns before the tab is closed', a
   expect(dialog.type()).toBe('beforeunload')
   await dialog.dismiss()
   const kept = await replicates()
-  await expect.poll(replicates).toBeGreaterThan(kept)
+  await eventually(replicates).toBeGreaterThan(kept)
 
   await line.getByRole('link').click()
   await page.waitForURL('**/runs/under-way/*')
@@ -114,7 +114,7 @@ it('goes on while its person moves about, and warns before the tab is closed', a
 it('ends at the precision that was asked for', async () => {
   const { scenarioId } = await pier.scenario({ ...CONTROL, title: 'To a precision' })
   const { page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`)
-  await page.locator('label').filter({ hasText: /^a precision$/ }).click()
+  await page.locator('label').filter({ hasText: /^\s*a precision\s*$/ }).click()
   await enter(page, 'replicates', '20000')
   await enter(page, 'standardError', '0.02')
   await goButton(page).click()

@@ -102,13 +102,13 @@ describe('every page', () => {
 
   it('of a run under way, on the front page and on its own', async () => {
     const front = await pier.seat('/', { who: null })
-    await front.page.locator('label').filter({ hasText: /^held$/ }).click()
+    await front.page.locator('label').filter({ hasText: /^\s*held\s*$/ }).click()
     await front.page.getByRole('button', { name: 'Set going', exact: true }).click()
     await front.page.locator('figure svg path.sim').waitFor()
     expect(await lookOver(front.page)).toEqual([])
     await front.leave()
     const { page, seen, leave } = await pier.seat(`/scenarios/${places[':scenarioId']}`)
-    await page.locator('[data-path="algorithm"] label').filter({ hasText: /^step$/ }).click()
+    await page.locator('[data-path="algorithm"] label').filter({ hasText: /^\s*step\s*$/ }).click()
     await enter(page, 'replicates', '20000')
     await goButton(page).click()
     await page.waitForURL('**/runs/under-way/*')

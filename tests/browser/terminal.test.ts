@@ -4,7 +4,7 @@ import type { Page } from 'playwright-core'
 import type { RunDetail } from '../../shared/schemas/api/run'
 import { SMALL } from '../support/bench'
 import { runBody } from '../support/runs'
-import { expectQuiet } from './support/browser'
+import { eventually, expectQuiet, words } from './support/browser'
 import { Pier } from './support/bench'
 
 let pier: Pier, address: string
@@ -19,7 +19,7 @@ beforeAll(async () => {
 afterAll(() => pier?.close())
 
 const terminal = (page: Page) => page.locator('section').filter({ has: page.getByRole('heading', { name: /^Terminal/ }) })
-const time = (page: Page) => terminal(page).getByRole('heading').textContent()
+const time = (page: Page) => words(terminal(page).getByRole('heading'))
 const frames = (page: Page, count: number) => page.evaluate(async (wanted) => {
   for (let i = 0; i < wanted; i++) await new Promise(requestAnimationFrame)
 }, count)
@@ -43,7 +43,7 @@ it('turns the ribbon in three dimensions and plays until it is stopped', async (
 
   const start = await time(page)
   await terminal(page).getByRole('button', { name: 'Play the walk' }).click()
-  await expect.poll(() => time(page)).not.toBe(start)
+  await eventually(() => time(page)).not.toBe(start)
   await terminal(page).getByRole('button', { name: 'Stop the walk' }).click()
   await terminal(page).getByRole('button', { name: 'Play the walk' }).waitFor()
   await terminal(page).getByRole('button', { name: 'Flat again' }).click()
@@ -63,7 +63,7 @@ it('shows the flat picture and says so where WebGL is missing', async () => {
   })
   await terminal(page).locator('svg').first().waitFor()
   await terminal(page).getByRole('button', { name: 'Turn in 3D' }).click()
-  await expect.poll(() => terminal(page).textContent()).toContain('This browser shows no 3D (WebGL 2 is missing); the flat picture stands.')
+  await eventually(() => words(terminal(page))).toContain('This browser shows no 3D (WebGL 2 is missing); the flat picture stands.')
   expect(await terminal(page).locator('svg').count()).toBeGreaterThan(0)
   expect(await terminal(page).locator('canvas').count()).toBe(0)
   expectQuiet(seen)
@@ -73,7 +73,7 @@ it('shows the flat picture and says so where WebGL is missing', async () => {
 it('stays still where the device asks for less motion, and moves by single steps on request', async () => {
   const { page, seen, leave } = await pier.seat(address, { context: { reducedMotion: 'reduce' }, expected: [/GPU stall|GroupMarkerNotSet/] })
   await terminal(page).locator('svg').first().waitFor()
-  expect(await terminal(page).textContent()).toContain('It moves by single steps only, as this device asks for less motion.')
+  expect(await words(terminal(page))).toContain('It moves by single steps only, as this device asks for less motion.')
   expect(await terminal(page).getByRole('button', { name: 'Play the walk' }).count()).toBe(0)
   await terminal(page).getByRole('button', { name: 'Turn in 3D' }).click()
   await terminal(page).locator('canvas').waitFor()
@@ -84,7 +84,7 @@ it('stays still where the device asks for less motion, and moves by single steps
   expect((await terminal(page).locator('.scene').screenshot()).equals(shown)).toBe(true)
   await terminal(page).getByRole('button', { name: '25', exact: true }).click()
   await terminal(page).getByRole('button', { name: '25 steps' }).click()
-  await expect.poll(() => time(page)).not.toBe(before)
+  await eventually(() => time(page)).not.toBe(before)
   const running = await page.evaluate(() => document.getAnimations().filter(one => one.playState === 'running').length)
   expect(running).toBe(0)
   expectQuiet(seen)

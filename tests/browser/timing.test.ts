@@ -6,7 +6,7 @@ import { afterAll, beforeAll, expect, it } from 'vitest'
 import type { Page } from 'playwright-core'
 import { estimateCost, PREVIEW } from '../../shared/walk/cost'
 import { ScenarioSchema, type ScenarioInput } from '../../shared/schemas/scenario'
-import { expectQuiet } from './support/browser'
+import { eventually, expectQuiet, words } from './support/browser'
 import { box, CONTROL, Pier } from './support/bench'
 import { p95, readStopwatch, startStopwatch, waitForDrawn } from './support/stopwatch'
 
@@ -58,11 +58,11 @@ it('stays as smooth while keys come faster than walks', async () => {
   await box(page, 'medium.densityPerUm3').focus()
   for (let i = 0; i < 40; i++) await page.keyboard.press(i % 20 < 10 ? 'ArrowUp' : 'ArrowDown')
   await box(page, 'medium.densityPerUm3').fill('700')
-  await expect.poll(() => page.locator('[data-preview]').getAttribute('data-preview')).toBe('drawn')
+  await eventually(() => page.locator('[data-preview]').getAttribute('data-preview')).toBe('drawn')
   const { longest, tasks } = await readStopwatch(page)
   console.log(`fast keys: longest task ${longest.toFixed(0)} ms, ${tasks} above 50 ms in 41 inputs`)
   expect(longest).toBeLessThan(50 * SLACK)
-  expect(await page.locator('h1').textContent()).toMatch(/against revision 1/)
+  expect(await words(page.locator('h1'))).toMatch(/against revision 1/)
   expectQuiet(seen)
   await leave()
 })
@@ -84,7 +84,7 @@ it('says why there is no preview beyond the cap, and keeps the closed form', asy
   const { scenarioId } = await pier.scenario({ ...AT_THE_CAP, ribbon: { shape: 'plate', rows: 30, columns: 25, faces: 2, classLayout: 'interleaved' } })
   const { page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`)
   await page.locator('[data-preview="too-large"]').waitFor()
-  expect(await page.locator('[data-preview] figcaption').textContent()).toMatch(/No preview walk: A preview is walked for up to 1,000 sites; this ribbon has 1,500\./)
+  expect(await words(page.locator('[data-preview] figcaption'))).toMatch(/No preview walk: A preview is walked for up to 1,000 sites; this ribbon has 1,500\./)
   expect(await page.locator('[data-preview] svg path.exp').getAttribute('d')).toMatch(/^M/)
   expectQuiet(seen)
   await leave()

@@ -1,5 +1,5 @@
 /** A real Chromium, and what a page may never do: write an error, throw, ask another origin, break its own content rules. */
-import { chromium, type Browser, type BrowserContext, type BrowserContextOptions, type Page } from 'playwright-core'
+import { chromium, type Browser, type BrowserContext, type BrowserContextOptions, type Locator, type Page } from 'playwright-core'
 import { expect } from 'vitest'
 import { findChromium } from '../../../scripts/support/packages.mjs'
 import type { Visitor } from '../../support/visitor'
@@ -53,12 +53,22 @@ export function watch(page: Page, base: string, expected: RegExp[] = []): Watch 
   return seen
 }
 
+/** Looks again until it is so. */
+export const eventually = <T>(read: () => T, options: { timeout?: number } = {}) => expect.poll(read, { timeout: PATIENCE_MS, interval: 100, ...options })
+/** What a person reads there: one space wherever the markup or the typesetting has another kind. */
+export const words = async (what: Locator): Promise<string> => (await what.textContent() ?? '').replace(/\s+/g, ' ').trim()
 /** Opens an address and waits until the page is alive. */
 export async function visit(page: Page, url: string): Promise<void> {
-  await page.goto(url)
+  await page.goto(url, { waitUntil: 'domcontentloaded' })
   await alive(page)
 }
 /** The page answers: what the server drew has been taken over by the application. */
-export const alive = (page: Page) => page.waitForFunction(() => (window as unknown as { useNuxtApp?: () => { isHydrating?: boolean } }).useNuxtApp?.().isHydrating === false)
+export const alive = (page: Page) => page.waitForFunction(() => {
+  try {
+    return (window as unknown as { useNuxtApp?: () => { isHydrating?: boolean } }).useNuxtApp?.().isHydrating === false
+  } catch {
+    return false // asked in the moment when it is being made
+  }
+})
 
 export const expectQuiet = (seen: Watch) => expect(seen.complaints).toEqual([])
