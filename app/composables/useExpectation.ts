@@ -76,6 +76,6 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
     const walked = preview.value ? [walkSeries(preview.value, 'preview', `Preview walk, ${preview.value.replicates} replicates`)] : []
     return [...before, closedFormSeries(scenario.value, sites.value, 'closed-form', 'Closed form'), ...solved, ...walked]
   })
-  return { formula, savedFormula, sites, series, exact: readonly(exact), preview: readonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
+  return { formula, savedFormula, sites, series, exact: shallowReadonly(exact), preview: shallowReadonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
 }
 export type Expectation = ReturnType<typeof useExpectation>

@@ -1,8 +1,10 @@
 /** The one desk of the application that makes outcomes, in a worker of its own, started on first need. */
-import { wrap, type Remote } from 'comlink'
+import { wrap } from 'comlink'
 import { OutcomeDesk } from '~/utils/outcomeDesk'
 
-export type Desk = Pick<Remote<OutcomeDesk>, 'open' | 'add' | 'outcome' | 'body' | 'blocks' | 'close'>
+type Asked = 'open' | 'add' | 'outcome' | 'body' | 'blocks' | 'close'
+/** The desk as its callers see it, in the worker or on the page: every answer is waited for. */
+export type Desk = { [name in Asked]: (...given: Parameters<OutcomeDesk[name]>) => Promise<Awaited<ReturnType<OutcomeDesk[name]>>> }
 let desk: Promise<Desk> | undefined
 /** A worker script that does not answer in this time is given up, and outcomes are made on the page [ms]. */
 const START_LIMIT_MS = 10_000
@@ -30,7 +32,7 @@ async function start(): Promise<Desk> {
       setTimeout(() => refuse(new Error('The outcome worker did not answer.')), START_LIMIT_MS)
     })
     await Promise.race([remote.close('no-run'), failed])
-    return remote
+    return remote as Desk
   } catch {
     worker?.terminate()
     return onPage()

@@ -138,14 +138,17 @@ function candidate(target: LabelTarget, from: readonly [number, number], offset:
 
 function bestPlace(target: LabelTarget, around: Surroundings): Candidate | null {
   const { frame } = around
-  let best: Candidate | null = null
+  let best = null as Candidate | null
   const stride = Math.max(1, Math.floor(target.points.length / 60))
   for (let i = 0; i < target.points.length; i += stride) {
     const from = target.points[i]!
     const share = (from[0] - frame.left) / (frame.right - frame.left)
     if (share < 0.04 || share > 0.94 || from[1] < frame.top || from[1] > frame.bottom) continue
     const parting = Math.min(partingAt(from[0], from[1], around.others), 16)
-    for (const offset of OFFSETS) best = candidate(target, from, offset, parting, around, best?.cost ?? Infinity) ?? best
+    for (const offset of OFFSETS) {
+      const bound: number = best?.cost ?? Infinity
+      best = candidate(target, from, offset, parting, around, bound) ?? best
+    }
   }
   return best
 }
