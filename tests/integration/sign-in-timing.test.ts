@@ -38,8 +38,7 @@ it('takes the same time class and gives the same answer, medians of 50 each with
     const started = performance.now()
     const { status, body, headers } = await new Visitor(world.server.base).signIn(kind === 'known' ? 'known@tests.example' : `unknown-${i}@tests.example`, `not the phrase ${i}`)
     times[kind].push(performance.now() - started)
-    headers.delete('date')
-    bodies.add(JSON.stringify([status, body, [...headers]]))
+    bodies.add(JSON.stringify([status, body, [...headers].filter(([name]) => name !== 'date')]))
   }
   // Alternating, so that a busy machine slows both alike.
   for (let i = 0; i < PAIRS; i += 1) {
