@@ -5,7 +5,6 @@ import type { Scenario } from '#shared/schemas/scenario'
 import { formatInterval, formatTime } from '#shared/units'
 import type { SentencePart } from './sentenceParts'
 
-
 const tauWords = (tauS: number | null) => tauS === null ? 'never' : formatTime(tauS)
 const CHANGED_FROM = 0.005
 

@@ -1,5 +1,4 @@
 /** The main thread's side of the examining threads: started on first need, replaced after a fault, ended when idle. */
-/// <reference path="./virtual.d.ts" />
 import { Worker } from 'node:worker_threads'
 import examinerUrl from 'virtual:moorage-examiner'
 import { problem } from '../utils/problem'
