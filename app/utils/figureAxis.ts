@@ -79,7 +79,7 @@ export function timeAxis(kind: TimeScale, firstS: number, lastS: number, left: n
 export interface ValueAxis { place: (value: number) => number, ticks: AxisTick[], from: number, to: number }
 /** The fraction axis: 0 to 1, or a narrower range where nothing fills beyond a tenth. */
 export function fractionAxis(highest: number, top: number, bottom: number): ValueAxis {
-  const to = highest > 0.5 ? 1 : highest > 0.25 ? 0.5 : highest > 0.1 ? 0.25 : Math.max(0.01, scaleLinear([0, highest], [0, 1]).nice(5).domain()[1]!)
+  const to = highest > 0.5 || highest <= 0 ? 1 : highest > 0.25 ? 0.5 : highest > 0.1 ? 0.25 : Math.max(0.01, scaleLinear([0, highest], [0, 1]).nice(5).domain()[1]!)
   const scale = scaleLinear([0, to], [bottom, top])
   const places = to >= 0.5 ? 1 : to >= 0.1 ? 2 : 3
   return { place: scale, from: 0, to, ticks: scale.ticks(5).map(at => ({ at, text: at.toFixed(places), major: true })) }
