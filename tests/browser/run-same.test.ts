@@ -38,7 +38,7 @@ it('gives the same digest in Chromium, again in Chromium, and in Node with one a
   expect(await pier.savedRuns(scenarioId)).toHaveLength(1)
   expect(run.outcome.engine.algorithm).toBe('attempt')
   const [one, two] = [await inNode(document, 'tide 7', 120, 1), await inNode(document, 'tide 7', 120, 2)]
-  expect([one.digest, two.digest]).toEqual([run.digest, run.digest])
+  expect([one.digest, two.digest]).toEqual([run.outcome.digest, run.outcome.digest])
   expect(one.ratio).toEqual(run.outcome.ratio)
   expectQuiet(seen)
   await leave()
@@ -76,7 +76,7 @@ it('replaces a worker that died and gives the same digest', async () => {
   const run = await pier.run(await atSavedRun(page))
   expect(await page.evaluate(() => (window as unknown as { moorageKilled?: number }).moorageKilled)).toBe(1)
   expect(run).toMatchObject({ partial: false, replicates: 150 })
-  expect((await inNode(document, 'storm 3', 150, 1)).digest).toBe(run.digest)
+  expect((await inNode(document, 'storm 3', 150, 1)).digest).toBe(run.outcome.digest)
   expectQuiet(seen)
   await leave()
 })

@@ -23,7 +23,7 @@ const done = async (page: Page) => Number(/^\s*([\d\s,.\u202f\u00a0]+?) of /.exe
 const curve = (page: Page) => page.locator('figure svg path.sim').first().getAttribute('d')
 
 async function setGoing(seed: string) {
-  const { scenarioId, document } = await pier.scenario(LONG)
+  const { scenarioId, document: scenario } = await pier.scenario(LONG)
   const seat = await pier.seat(`/scenarios/${scenarioId}`)
   await enter(seat.page, 'replicates', String(REPLICATES))
   await box(seat.page, 'seed').fill(seed)
@@ -31,11 +31,11 @@ async function setGoing(seed: string) {
   await goButton(seat.page).click()
   await seat.page.waitForURL('**/runs/under-way/*')
   await seat.page.locator('figure svg path.sim').first().waitFor()
-  return { ...seat, scenarioId, document }
+  return { ...seat, scenarioId, scenario }
 }
 
 it('grows with its band, answers meanwhile, stops within a second and keeps the prefix as partial', async () => {
-  const { page, seen, leave, scenarioId, document } = await setGoing('to be stopped')
+  const { page, seen, leave, scenarioId, scenario } = await setGoing('to be stopped')
   const [early, first] = [await done(page), await curve(page)]
   await eventually(() => done(page)).toBeGreaterThan(early)
   await eventually(() => curve(page)).not.toBe(first)
@@ -71,7 +71,7 @@ it('grows with its band, answers meanwhile, stops within a second and keeps the 
   expect(run.replicates).toBeLessThan(REPLICATES)
   expect(run.outcome.blocks.map(block => block.from)).toEqual([0, ...run.outcome.blocks.slice(0, -1).map(block => block.to)])
   const first200 = run.outcome.blocks.filter(block => block.to <= 200)
-  const here = await runInNode({ scenario: ScenarioSchema.parse(document), seed: 'to be stopped', replicates: first200.at(-1)!.to, algorithm: 'step', ranges: first200.map(({ from, to }) => ({ from, to })) }, { workers: 1 })
+  const here = await runInNode({ scenario: ScenarioSchema.parse(scenario), seed: 'to be stopped', replicates: first200.at(-1)!.to, algorithm: 'step', ranges: first200.map(({ from, to }) => ({ from, to })) }, { workers: 1 })
   expect(first200.map(block => block.digest)).toEqual(here.blocks.map(blockDigest))
   expectQuiet(seen)
   await leave()
