@@ -27,6 +27,8 @@ export function useScenarioEditing(detail: () => ScenarioDetail | null, start: S
   })
 
   onMounted(() => {
+    // A run may be set going after the connection went.
+    preloadRouteComponents('/runs/under-way/next').catch(() => undefined)
     const kept = draft.restore()
     if (kept) {
       state.restart(detail()?.document ?? start, { document: kept.document, wrong: kept.wrong })
