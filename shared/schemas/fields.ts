@@ -1,5 +1,6 @@
 /** What each field of a scenario is called: one table for form, history, comparison and problem sentences. */
 import type { Scenario } from './scenario'
+import { capital } from './text'
 
 export interface FieldName {
   /** Words for people, the kind's own name filled in. */
@@ -52,8 +53,6 @@ const RELEASE_NAMES: Record<string, FieldName> = {
   atMs: { label: 'at', unit: 'ms' },
   fraction: { label: 'fraction let go', unit: 'of filled' },
 }
-
-const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1)
 
 /** Name of the field at a path (`sites.0.attachProbability` → “Quick: attachment”, s, per hit); an unknown path names itself. */
 export function fieldName(path: string, scenario?: Pick<Scenario, 'sites' | 'vesicles'>): FieldName {

@@ -6,3 +6,6 @@ const HARMFUL = /[\u0000-\u0008\u000B\u000C\u000E-\u001F\u007F-\u009F\u200E\u200
 export function neutraliseText(text: string): string {
   return text.replace(HARMFUL, '').normalize('NFC').trim()
 }
+
+/** First letter in capital, the rest as it is. */
+export const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)
