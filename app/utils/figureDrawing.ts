@@ -110,12 +110,6 @@ export function figureTimeAxis(series: readonly FigureSeries[], scale: TimeScale
   return timeAxis(scale, firstS, lastS, LEFT, 842)
 }
 
-/** The time axis alone: what a sentence about the figure needs, at a fraction of the cost of all that is drawn. */
-export function layTimeAxis({ width, scale, series }: Pick<FigureOptions, 'width' | 'scale' | 'series'>): TimeAxis {
-  const { firstS, lastS } = bound(series)
-  return timeAxis(scale, firstS, lastS, LEFT, width - RIGHT)
-}
-
 /** Everything that is drawn, in pixels. */
 export function layFigure(options: FigureOptions): FigureLayout {
   const { series } = options
