@@ -45,6 +45,7 @@ const tooWide = (page: Page, what: string) => page.evaluate((where) => {
 }, what)
 /** Everything in this page that axe, its width or its headings say; looked at in light, dark, on a tablet and on a phone. */
 async function lookOver(page: Page): Promise<string[]> {
+  await page.locator('main h1').filter({ hasText: /\S/ }).first().waitFor()
   await page.waitForLoadState('networkidle')
   const found: string[] = []
   if (!/\S.* · Moorage$|^Moorage$/.test(await page.title())) found.push(`title: “${await page.title()}”`)
