@@ -2,17 +2,9 @@
 import type { Outcome, OutcomeClass } from '#shared/schemas/outcome'
 import { stepSeconds, type Scenario } from '#shared/schemas/scenario'
 import { type NumberStyle, formatForField, formatInterval, formatNumber, formatQuantity, formatTime, formatWithError } from '#shared/units'
+import { reasonText } from '#shared/walk/sentences'
 import type { SentencePart } from './sentenceParts'
 
-type Reason = Outcome['agreement']['reason']
-const REASON_WORDS: Record<Reason, string> = {
-  'none': '',
-  'own-neighbourhood': ', because the ribbon empties its own neighbourhood',
-  'finite-pool': ', because the store of vesicles is being used up',
-  'exclusion': ', because vesicles that keep each other apart arrive more evenly',
-  'discrete-step': '; what little differs comes from the length of a step',
-  'too-few': '',
-}
 /** A number that a person typed, as typed; and a time span of the schedule. */
 export const typedNumber = (value: number, style: NumberStyle = {}) => formatForField(Number(value.toPrecision(6)), style.decimal)
 export const typedTime = (seconds: number, style: NumberStyle = {}) => `${typedNumber(seconds, style)}\u00A0s`
@@ -49,7 +41,7 @@ function undecided(outcome: Outcome, style: NumberStyle): SentencePart[] {
 export function verdictSentence(outcome: Outcome, style: NumberStyle = {}): SentencePart[] {
   const { ratio, agreement } = outcome
   if (agreement.verdict === 'undecided' || ratio.value === null) return undecided(outcome, style)
-  const reason = REASON_WORDS[agreement.reason]
+  const reason = reasonText(outcome)
   if (agreement.verdict === 'agrees') return [
     { text: 'The walk agrees with the closed form', strong: true }, { text: ` within ±${agreement.marginPercent} %: ratio ${ratioText(ratio.value, style)} ` }, { text: interval(ratio, style), quiet: true }, { text: `${reason}.` },
   ]
