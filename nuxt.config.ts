@@ -60,7 +60,7 @@ export default defineNuxtConfig({
   typescript: {
     strict: true,
     tsConfig: {
-      include: ['../workers/**/*.ts', '../tests/**/*.ts', '../server/**/*.d.ts'],
+      include: ['../workers/**/*.ts', '../tests/**/*.ts'],
       exclude: ['../workers/kernel/assembly/**'],
       compilerOptions: { noUncheckedIndexedAccess: true },
     },
