@@ -75,9 +75,10 @@ class WalkBooks {
     return this.pending
   }
 
-  async outcome(engine: EngineId, partial: boolean, landingError: number) {
-    await this.pending
-    return this.desk.outcome(this.run.localId, { engine, partial, landingError }, this.tail)
+  /** Of what is entered at the call: a tail read later may lie beyond the blocks that the desk has by then. */
+  outcome(engine: EngineId, partial: boolean, landingError: number) {
+    const { tail } = this
+    return this.pending.then(() => this.desk.outcome(this.run.localId, { engine, partial, landingError }, tail))
   }
 }
 
