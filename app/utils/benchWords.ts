@@ -46,7 +46,12 @@ const CHANGES: Record<HomeChange['kind'], (change: HomeChange) => { does: string
   'run-saved': change => ({ does: 'saved', link: `Run ${change.runNumber}`, to: `/runs/${change.runId}`, rest: ` of ${change.title}` }),
   'run-binned': change => ({ does: 'put', link: `Run ${change.runNumber}`, to: '/runs?bin=1', rest: ` of ${change.title} in the bin` }),
 }
-export const changeWords = (change: HomeChange) => CHANGES[change.kind](change)
+/** Whatever lies in the bin now is looked for there. */
+const BINS = { scenario: '/scenarios?bin=1', run: '/runs?bin=1' } as const
+export function changeWords(change: HomeChange) {
+  const words = CHANGES[change.kind](change)
+  return change.binned ? { ...words, to: BINS[change.binned] } : words
+}
 
 /** People by role, one line a role: `Tomasz Birk, Ngozi Hale` · `members`. */
 export function peopleByRole(members: BenchHome['members']): { names: string, role: string }[] {

@@ -28,11 +28,13 @@ async function newestScenarios(db: Handle, benchId: string): Promise<BenchHome['
 async function newestChanges(db: Handle, benchId: string): Promise<BenchHome['changes']> {
   const rows = await db.select({
     kind: auditEvents.kind, who: users.name, at: auditEvents.at, scenarioId: scenarios.scenarioId, title: scenarios.title,
-    revision: auditEvents.revision, runId: auditEvents.runId, runNumber: runs.number,
+    revision: auditEvents.revision, runId: auditEvents.runId, runNumber: runs.number, scenarioGone: scenarios.deletedAt, runGone: runs.deletedAt,
   }).from(auditEvents)
     .innerJoin(users, eq(users.userId, auditEvents.actorId)).innerJoin(scenarios, eq(scenarios.scenarioId, auditEvents.scenarioId)).leftJoin(runs, eq(runs.runId, auditEvents.runId))
     .where(and(eq(auditEvents.benchId, benchId), inArray(auditEvents.kind, [...CHANGE_KINDS]))).orderBy(desc(auditEvents.at), desc(auditEvents.eventId)).limit(MOST)
-  return rows.map(row => ({ ...row, kind: row.kind as BenchHome['changes'][number]['kind'], at: row.at.toISOString() }))
+  return rows.map(({ scenarioGone, runGone, ...row }) => ({
+    ...row, kind: row.kind as BenchHome['changes'][number]['kind'], at: row.at.toISOString(), binned: scenarioGone ? 'scenario' : runGone ? 'run' : null,
+  }))
 }
 
 export async function describeHome(db: Handle, reader: Reader): Promise<BenchHome> {

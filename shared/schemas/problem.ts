@@ -10,10 +10,23 @@ export type ProblemCode = keyof typeof PROBLEM_STATUS
 export interface FieldProblem { path: string, message: string }
 export interface Problem { type: string, title: string, status: number, detail: string, code: ProblemCode, errors?: FieldProblem[], current?: unknown, retryAfterSeconds?: number }
 
-interface Issue { code?: string, path: PropertyKey[], message: string, keys?: string[] }
-/** Full paths (`sites.0.attachProbability`); each unknown key is named on its own. */
+interface Issue { code?: string, path: PropertyKey[], message: string, keys?: string[], expected?: string, values?: readonly unknown[], minimum?: number | bigint, maximum?: number | bigint }
+
+const KINDS: Record<string, string> = { string: 'A text', number: 'A finite number', int: 'A whole number', boolean: 'True or false', array: 'A list', tuple: 'A list', object: 'An object' }
+/** The library's own English, in our words; a sentence of a schema of ours stays. */
+function ownWords(issue: Issue): string {
+  const missing = issue.message.endsWith('received undefined')
+  switch (issue.message.split(/[:,]/)[0]) {
+    case 'Invalid input': return missing ? 'Missing.' : issue.values ? `One of: ${issue.values.join(', ')}.` : `${KINDS[issue.expected ?? ''] ?? 'Something else'} is wanted here.`
+    case 'Invalid option': return `One of: ${(issue.values ?? []).join(', ')}.`
+    case 'Too small': return `At least ${issue.minimum}.`
+    case 'Too big': return `At most ${issue.maximum}.`
+    default: return issue.message
+  }
+}
+/** Full paths (`sites.0.attachProbability`); each unknown key is named on its own; the whole document is called `document`. */
 export function fieldProblems(issues: readonly Issue[]): FieldProblem[] {
   return issues.flatMap(issue => issue.code === 'unrecognized_keys'
     ? (issue.keys ?? []).map(key => ({ path: [...issue.path, key].join('.'), message: 'Unknown field.' }))
-    : [{ path: issue.path.join('.'), message: issue.message }])
+    : [{ path: issue.path.join('.') || 'document', message: ownWords(issue) }])
 }

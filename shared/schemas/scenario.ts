@@ -16,13 +16,15 @@ export function seedProblem(text: string): string | null {
   return length > SCENARIO_LIMITS.seedLength ? `A seed has at most ${SCENARIO_LIMITS.seedLength} characters; this has ${length}.` : null
 }
 
+/** Tells what is missing from what is no number. */
+const numberWanted = (issue: { input?: unknown }) => issue.input === undefined ? 'Missing: a number is wanted here.' : 'A finite number is wanted here.'
 const between = (range: readonly [number, number], unit: string) =>
-  z.number({ error: 'A finite number is wanted here.' }).min(range[0], `Allowed: ${range[0]} to ${range[1]} ${unit}.`).max(range[1], `Allowed: ${range[0]} to ${range[1]} ${unit}.`)
+  z.number({ error: numberWanted }).min(range[0], `Allowed: ${range[0]} to ${range[1]} ${unit}.`).max(range[1], `Allowed: ${range[0]} to ${range[1]} ${unit}.`)
 const whole = (range: readonly [number, number], unit: string) =>
   between(range, unit).int(`A whole number of ${unit} is wanted here.`)
 const fraction = (what: string) =>
-  z.number({ error: 'A finite number is wanted here.' }).min(0, `${what} lies between 0 and 1.`).max(1, `${what} lies between 0 and 1.`)
-const share = z.number({ error: 'A finite number is wanted here.' }).gt(0, 'A share is above 0.').lte(1, 'A share is at most 1.')
+  z.number({ error: numberWanted }).min(0, `${what} lies between 0 and 1.`).max(1, `${what} lies between 0 and 1.`)
+const share = z.number({ error: numberWanted }).gt(0, 'A share is above 0.').lte(1, 'A share is at most 1.')
 const className = z.string().transform(neutraliseText).pipe(z.string().min(1, 'A class needs a name.').max(SCENARIO_LIMITS.classNameLength))
 
 export const MediumSchema = z.strictObject({
@@ -43,7 +45,7 @@ export const RibbonSchema = z.discriminatedUnion('shape', [
     count,
   }),
   z.strictObject({ shape: z.literal('isolated'), count }),
-])
+], { error: 'One of: plate, isolated.' })
 
 const marginSites = whole(SCENARIO_LIMITS.marginSites, 'voxels')
 const length = between(SCENARIO_LIMITS.sizeUm, 'µm')
@@ -51,7 +53,7 @@ export const ReservoirSchema = z.discriminatedUnion('supply', [
   z.strictObject({ supply: z.literal('stirred') }),
   z.strictObject({ supply: z.literal('held'), marginSites }),
   z.strictObject({ supply: z.literal('sealed'), sizeUm: z.tuple([length, length, length]) }),
-])
+], { error: 'One of: stirred, held, sealed.' })
 
 export const SiteClassSchema = z.strictObject({
   name: className,
@@ -67,11 +69,11 @@ export const VesicleClassSchema = z.strictObject({
   mobilityFactor: fraction('A factor').default(1),
 })
 export const ScheduleSchema = z.strictObject({
-  durationS: z.number({ error: 'A finite number is wanted here.' }).gt(0, 'A duration is above 0 s.').max(SCENARIO_LIMITS.durationS, `At most ${SCENARIO_LIMITS.durationS} s.`),
-  sampleEveryMs: z.number({ error: 'A finite number is wanted here.' }).gt(0, 'An interval is above 0 ms.').max(SCENARIO_LIMITS.durationS * 1000),
+  durationS: z.number({ error: numberWanted }).gt(0, 'A duration is above 0 s.').max(SCENARIO_LIMITS.durationS, `At most ${SCENARIO_LIMITS.durationS} s.`),
+  sampleEveryMs: z.number({ error: numberWanted }).gt(0, 'An interval is above 0 ms.').max(SCENARIO_LIMITS.durationS * 1000),
   initialFill: fraction('The initial fill').default(0),
   releases: z.array(z.strictObject({
-    atMs: z.number({ error: 'A finite number is wanted here.' }).gt(0, 'A release comes after the start.'),
+    atMs: z.number({ error: numberWanted }).gt(0, 'A release comes after the start.'),
     fraction: fraction('A fraction'),
   })).max(SCENARIO_LIMITS.releases).default([]),
   decline: z.strictObject({
