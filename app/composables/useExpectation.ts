@@ -16,6 +16,13 @@ const MOST_SECONDS = 4
 /** Typing pauses shorter than this do not start a walk [ms]. */
 const SETTLE_MS = 25
 
+/** A preview is read at some hundreds of times: thousands would be counted, sent and drawn at every keystroke. */
+const PREVIEW_SAMPLES = 400
+function coarselySampled(scenario: Scenario): Scenario {
+  const { schedule } = scenario
+  return { ...scenario, schedule: { ...schedule, sampleEveryMs: Math.max(schedule.sampleEveryMs, schedule.durationS * 1000 / PREVIEW_SAMPLES) } }
+}
+
 export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonly<Ref<Scenario | null>>) {
   const crew = useCrew()
   const preview = shallowRef<Outcome | null>(null)
@@ -33,8 +40,9 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
     const found = await crew.exact(one).catch(() => null)
     if (mine === asked) exact.value = found
   }
-  async function walk(one: Scenario) {
+  async function walk(typed: Scenario) {
     const mine = ++asked
+    const one = coarselySampled(typed)
     void solve(one, mine)
     const refusal = previewRefusal(one, MOST_SECONDS, crew.pace)
     if (refusal) {

@@ -59,9 +59,12 @@ function bandPath(times: readonly number[], band: FigureBand, axis: TimeAxis, x:
   return area<number>(i => x(low[i]!.timeS), i => y(low[i]!.value), i => y(high[i]!.value)).digits(1)(Array.from({ length: count }, (_, i) => i)) ?? ''
 }
 
+/** Names are placed against curves read at this spacing: finer changes no place. */
+const LABEL_STEP_PX = 3
+
 function labelTargets(series: readonly FigureSeries[], axis: TimeAxis, y: Place, narrow: boolean): LabelTarget[] {
   const pixels = (times: readonly number[], values: readonly number[]) =>
-    drawnPoints(times, values, axis.fromS, axis.toS, axis.place).map(point => [axis.place(point.timeS), y(point.value)] as const)
+    drawnPoints(times, values, axis.fromS, axis.toS, axis.place, LABEL_STEP_PX).map(point => [axis.place(point.timeS), y(point.value)] as const)
   const named = series.map(one => ({
     id: one.id,
     lines: [{ text: narrow ? one.shortLabel ?? one.label : one.label, strong: one.kind !== 'earlier' }, ...(one.note && !narrow ? [{ text: one.note, strong: false }] : [])],

@@ -70,8 +70,18 @@ const OFFSETS: readonly (readonly [number, number])[] = [
   [-22, -34], [-34, -62], [-40, -90], [26, 40], [38, 66], [46, 96], [54, 130], [26, -40], [-26, 40], [60, 24], [-60, -24], [16, -70], [-16, 70], [20, 160], [-40, -130],
 ]
 
-function boxOf(lines: LabelLine[], x: number, y: number, anchor: 'start' | 'end'): Box {
+/** Widths of names are asked for at every place that is tried, and stay the same. */
+const widths = new WeakMap<LabelLine[], number>()
+function widthOfLines(lines: LabelLine[]): number {
+  const known = widths.get(lines)
+  if (known !== undefined) return known
   const width = Math.max(...lines.map(line => textWidth(line.text, line.strong)))
+  widths.set(lines, width)
+  return width
+}
+
+function boxOf(lines: LabelLine[], x: number, y: number, anchor: 'start' | 'end'): Box {
+  const width = widthOfLines(lines)
   return {
     left: anchor === 'start' ? x - 4 : x - width - 4, right: anchor === 'start' ? x + width + 4 : x + 4,
     top: y - 13, bottom: y + (lines.length - 1) * LINE_HEIGHT_PX + 6,

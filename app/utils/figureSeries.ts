@@ -65,11 +65,11 @@ export function curveValueAt(times: readonly number[], values: readonly number[]
 
 export interface CurvePoint { timeS: number, value: number, index: number }
 /**
- * Points worth drawing between two times: the ends read between samples, and at most one sample per half pixel,
+ * Points worth drawing between two times: the ends read between samples, and at most one sample per half pixel (or `stepPx`),
  * because a curve of 20,000 samples on a log axis crowds its last tenth into a few pixels.
  */
 export function drawnPoints(
-  times: readonly number[], values: readonly number[], fromS: number, toS: number, place: (timeS: number) => number,
+  times: readonly number[], values: readonly number[], fromS: number, toS: number, place: (timeS: number) => number, stepPx = 0.5,
 ): CurvePoint[] {
   const points: CurvePoint[] = []
   const add = (timeS: number, value: number | null, index: number) => {
@@ -82,7 +82,7 @@ export function drawnPoints(
     if (timeS <= fromS) continue
     if (timeS >= toS) break
     const x = place(timeS)
-    if (x - last < 0.5) continue
+    if (x - last < stepPx) continue
     add(timeS, values[i] ?? null, i)
     last = x
   }
