@@ -2,9 +2,8 @@
 export type DecimalSign = 'point' | 'comma'
 
 export const usePreferencesStore = defineStore('preferences', () => {
-  const options = { maxAge: 31_536_000, sameSite: 'lax', path: '/' } as const
-  const decimal = useCookie<DecimalSign>('moorage-decimal', { default: () => 'point', ...options })
+  const decimal = useKeptChoice<DecimalSign>('moorage-decimal', ['point', 'comma'], 'point')
   /** Single-letter keys can be switched off (WCAG 2.1.4). */
-  const singleKeys = useCookie<'on' | 'off'>('moorage-keys', { default: () => 'on', ...options })
+  const singleKeys = useKeptChoice('moorage-keys', ['on', 'off'], 'on')
   return { decimal, singleKeys }
 })

@@ -82,7 +82,7 @@ export function newLocalRun(start: RunStart, userId: string, startedAt: string):
 export const belongsToBench = (start: RunStart, userId: string): boolean =>
   (start.purpose ?? 'run') === 'run' && start.scenarioId !== null && start.revision !== null && userId !== 'nobody'
 
-/** Finished, and where it went is settled for now: saved, refused, kept for later, or never meant to be sent. */
+/** Finished, and where it went is known: saved, refused, kept for later, or never meant to be sent. */
 export function isSettled(run: Pick<LocalRun, 'state' | 'outcome' | 'send'>): boolean {
   if (run.state === 'running') return false
   if (run.outcome === null) return true

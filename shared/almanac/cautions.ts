@@ -72,7 +72,7 @@ function scheduleCautions(scenario: Scenario): Caution[] {
   const { schedule, vesicles } = scenario, found: Caution[] = []
   const rates = closedForm(scenario).classes.filter(one => one.sites > 0 && one.ratePerS > 0).map(one => one.ratePerS)
   if (schedule.initialFill === 1 && schedule.releases.length === 0)
-    found.push({ id: 'nothing', path: 'schedule.initialFill', sentence: 'Every site is filled from the start: nothing is left to refill.', source: 'the scenario itself', status: 'computed' })
+    found.push({ id: 'nothing', path: 'schedule.initialFill', sentence: 'Every site is filled from the start: there is nothing to refill.', source: 'the scenario itself', status: 'computed' })
   if (rates.length > 0 && schedule.sampleEveryMs / 1000 > 0.5 / Math.max(...rates))
     found.push({ id: 'sparse', path: 'schedule.sampleEveryMs', sentence: `The fastest sites refill with ${formatTime(1 / Math.max(...rates))}; samples ${formatTime(schedule.sampleEveryMs / 1000)} apart miss their start.`, source: 'τ = 1/(D·ρ·a·s)', status: 'computed' })
   vesicles.forEach((vesicle, i) => {
