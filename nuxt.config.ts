@@ -45,7 +45,10 @@ export default defineNuxtConfig({
   routeRules: {
     '/_nuxt/**': { headers: { 'cross-origin-embedder-policy': 'require-corp', 'cross-origin-resource-policy': 'same-origin' } },
   },
-  experimental: { defaults: { nuxtLink: { prefetch: false } } },
+  experimental: {
+    // app/plugins/lost-chunk.client.ts decides: a reload without a connection would lose the page.
+    emitRouteChunkError: 'manual',
+    defaults: { nuxtLink: { prefetch: false } } },
   compatibilityDate: '2026-01-01',
   nitro: {
     preset: 'node-server',

@@ -6,6 +6,9 @@ import { DEFAULT_RUN, type RunSettings } from '~/utils/runSettings'
 
 export interface EditConflict { current: StaleEdit, from: number, differences: Difference[] }
 
+/** The scripts of the pages that a run leads to: a run may end without a connection, and its outcome must show all the same. */
+const fetchRunPages = () => Promise.allSettled(['/runs/under-way/next', '/runs/local/here', '/runs/there'].map(page => preloadRouteComponents(page)))
+
 export function useScenarioEditing(detail: () => ScenarioDetail | null, start: Scenario) {
   const session = useSessionStore()
   const runs = useRunsStore()
@@ -28,7 +31,7 @@ export function useScenarioEditing(detail: () => ScenarioDetail | null, start: S
 
   onMounted(() => {
     // A run may be set going after the connection went.
-    preloadRouteComponents('/runs/under-way/next').catch(() => undefined)
+    void fetchRunPages()
     const kept = draft.restore()
     if (kept) {
       state.restart(detail()?.document ?? start, { document: kept.document, wrong: kept.wrong })
@@ -82,6 +85,7 @@ export function useScenarioEditing(detail: () => ScenarioDetail | null, start: S
     const saved = maySave.value && (state.edited.value || !detail()) ? await save() : detail() ?? undefined
     if (conflict.value) return
     const belongs = saved !== undefined && !state.edited.value
+    await fetchRunPages()
     const { aim, replicates, standardError, seed, algorithm } = run.value
     const localId = runs.start({
       scenario: state.drawable.value, scenarioId: belongs ? saved.scenarioId : null, revision: belongs ? saved.revision : null,
