@@ -24,9 +24,9 @@ function ownWords(issue: Issue): string {
     default: return issue.message
   }
 }
-/** Full paths (`sites.0.attachProbability`); each unknown key is named on its own; the whole document is called `document`. */
+/** Full paths (`sites.0.attachProbability`); each unknown key is named on its own. */
 export function fieldProblems(issues: readonly Issue[]): FieldProblem[] {
   return issues.flatMap(issue => issue.code === 'unrecognized_keys'
     ? (issue.keys ?? []).map(key => ({ path: [...issue.path, key].join('.'), message: 'Unknown field.' }))
-    : [{ path: issue.path.join('.') || 'document', message: ownWords(issue) }])
+    : [{ path: issue.path.join('.'), message: ownWords(issue) }])
 }
