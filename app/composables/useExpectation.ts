@@ -1,5 +1,5 @@
 /** What to expect of the scenario under the pen: closed form at once, a quick walk of fixed seed behind it. */
-import { closedForm } from '#shared/kinetics/closed-form'
+import { closedForm, siteTotal } from '#shared/kinetics/closed-form'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
 import { previewRefusal } from '#shared/walk/cost'
@@ -30,9 +30,11 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
   const exact = shallowRef<ExactRefill | null>(null)
   const previewState = shallowRef<PreviewState>('walking')
   const previewReason = shallowRef('')
-  const formula = computed(() => closedForm(scenario.value))
-  const savedFormula = computed(() => saved.value ? closedForm(saved.value) : null)
-  const sites = computed(() => formula.value.classes.reduce((sum, one) => sum + one.sites, 0))
+  /** What figures and numbers are of: they follow the field in a task of their own, so that no key waits for a drawing. */
+  const shown = shallowRef({ now: scenario.value, before: saved.value })
+  const formula = computed(() => closedForm(shown.value.now))
+  const savedFormula = computed(() => shown.value.before ? closedForm(shown.value.before) : null)
+  const sites = computed(() => siteTotal(shown.value.now.ribbon))
 
   let asked = 0
   async function solve(one: Scenario, mine: number) {
@@ -67,22 +69,32 @@ export function useExpectation(scenario: Readonly<Ref<Scenario>>, saved: Readonl
       if (mine === asked) previewState.value = 'failed'
     }
   }
-  let timer: ReturnType<typeof setTimeout> | undefined
+  let timer: ReturnType<typeof setTimeout> | undefined, turn: ReturnType<typeof setTimeout> | undefined
+  watch([scenario, saved], ([now, before]) => {
+    clearTimeout(turn)
+    turn = setTimeout(() => {
+      shown.value = { now, before }
+    })
+  })
   onMounted(() => watch(scenario, (one) => {
     clearTimeout(timer)
     timer = setTimeout(() => walk(one), SETTLE_MS)
   }, { immediate: true }))
-  onScopeDispose(() => clearTimeout(timer))
+  onScopeDispose(() => {
+    clearTimeout(turn)
+    clearTimeout(timer)
+  })
 
   const series = computed(() => {
-    const before = saved.value && savedFormula.value
-      ? [closedFormSeries(saved.value, savedFormula.value.classes.reduce((sum, one) => sum + one.sites, 0), 'earlier', 'Closed form, saved revision')]
+    const { now, before: earlier } = shown.value
+    const before = earlier
+      ? [closedFormSeries(earlier, siteTotal(earlier.ribbon), 'earlier', 'Closed form, saved revision')]
       : []
     const solved: FigureSeries[] = exact.value
       ? [{ id: 'exact', kind: 'other', label: 'Exact, one site', note: 'linear solution, no noise', times: exact.value.timesS, values: exact.value.filled }]
       : []
     const walked = preview.value ? [walkSeries(preview.value, 'preview', `Preview walk, ${preview.value.replicates} replicates`)] : []
-    return [...before, closedFormSeries(scenario.value, sites.value, 'closed-form', 'Closed form'), ...solved, ...walked]
+    return [...before, closedFormSeries(now, sites.value, 'closed-form', 'Closed form'), ...solved, ...walked]
   })
   return { formula, savedFormula, sites, series, exact: shallowReadonly(exact), preview: shallowReadonly(preview), previewState: readonly(previewState), previewReason: readonly(previewReason) }
 }

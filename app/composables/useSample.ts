@@ -1,6 +1,6 @@
 /** The sample of the front page: a few numbers of one scenario, its closed form at once. Nothing of it leaves the browser. */
 import { SAMPLE_SCENARIO } from '#shared/almanac/demo-scenarios'
-import { closedForm, closedFormFilled } from '#shared/kinetics/closed-form'
+import { closedForm, closedFormFilled, siteTotal } from '#shared/kinetics/closed-form'
 import { fieldProblems } from '#shared/schemas/problem'
 import { ScenarioSchema, type Scenario, type ScenarioInput } from '#shared/schemas/scenario'
 
@@ -50,7 +50,7 @@ function documentOf(numbers: SampleNumbers): ScenarioInput {
 
 /** Time at which half of the emptied sites are filled by the closed form [s]; null within the watched time. */
 export function halfRefillS(scenario: Scenario): number | null {
-  const total = closedForm(scenario).classes.reduce((sum, one) => sum + one.sites, 0)
+  const total = siteTotal(scenario.ribbon)
   const wanted = total * (1 + scenario.schedule.initialFill) / 2
   const filledAt = (timeS: number) => closedFormFilled(scenario, [timeS]).filled.reduce((sum, row) => sum + row[0]!, 0)
   if (filledAt(scenario.schedule.durationS) < wanted) return null
@@ -73,7 +73,7 @@ export function useSample() {
     if (now.success) scenario.value = now.data
   }, { immediate: true })
   const form = computed(() => closedForm(scenario.value))
-  const sites = computed(() => form.value.classes.reduce((sum, one) => sum + one.sites, 0))
+  const sites = computed(() => siteTotal(scenario.value.ribbon))
   const changed = computed(() => JSON.stringify(numbers) !== JSON.stringify(start()))
   const putBack = () => Object.assign(numbers, start())
   return { numbers, problems, scenario, form, sites, halfS: computed(() => halfRefillS(scenario.value)), changed, putBack }

@@ -2,12 +2,10 @@
 import type { ScenarioDetail, StaleEdit } from '#shared/schemas/api/scenario'
 import { scenarioDifferences, type Difference } from '#shared/schemas/differences'
 import type { Scenario } from '#shared/schemas/scenario'
+import { fetchRunPages } from '~/utils/runPages'
 import { DEFAULT_RUN, type RunSettings } from '~/utils/runSettings'
 
 export interface EditConflict { current: StaleEdit, from: number, differences: Difference[] }
-
-/** The scripts of the pages that a run leads to: a run may end without a connection, and its outcome must show all the same. */
-const fetchRunPages = () => Promise.allSettled(['/runs/under-way/next', '/runs/local/here', '/runs/there'].map(page => preloadRouteComponents(page)))
 
 export function useScenarioEditing(detail: () => ScenarioDetail | null, start: Scenario) {
   const session = useSessionStore()

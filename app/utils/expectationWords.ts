@@ -46,14 +46,16 @@ export function previewSentence(scenario: Scenario, outcome: Outcome): SentenceP
   const interval = lowS !== null && highS !== null ? ` (${formatInterval(lowS, highS)} s)` : ''
   const whose = outcome.classes.length > 1 ? ` for the ${kind.name} sites` : ''
   const { ratio, agreement } = outcome
-  const gap = ratio.value === null ? 0 : Math.round(Math.abs(ratio.value - 1) * 100)
+  const percents = [ratio.value, ratio.low, ratio.high].map(one => Math.round(((one ?? 1) - 1) * (agreement.verdict === 'faster' ? -100 : 100)))
+  const [gap, ...ends] = percents as [number, number, number]
+  const [least, most] = ends.sort((a, b) => a - b)
   const reasons: Record<string, string> = {
     'own-neighbourhood': 'the ribbon empties its own neighbourhood', 'finite-pool': 'the store is being used up',
     'exclusion': 'vesicles keep each other apart', 'discrete-step': 'one step fills more than the formula’s exponential',
   }
   const reason = reasons[agreement.reason]
   const verdict = agreement.verdict === 'slower' || agreement.verdict === 'faster'
-    ? `, ${gap} % ${agreement.verdict} in all than the closed form${reason ? `: ${reason}` : ''}.`
+    ? `, ${gap} % (95 % interval ${least} to ${most} %) ${agreement.verdict} in all than the closed form${reason ? `: ${reason}` : ''}.`
     : agreement.verdict === 'agrees' ? ', in agreement with the closed form.' : '; too few replicates to tell it from the closed form.'
   return [{ text: `${SUPPLY_WORDS[scenario.reservoir.supply]} the preview walk reads τ ${formatTime(valueS)}` }, { text: interval, quiet: true }, { text: `${whose}${verdict}` }]
 }

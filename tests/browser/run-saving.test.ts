@@ -41,10 +41,10 @@ it('saves a finished run and says when', async () => {
 it('keeps a run that finishes without a connection and sends it once when the connection is back', async () => {
   const { scenarioId } = await pier.scenario(SLOW)
   const { context, page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`, { expected: OFFLINE })
-  await go(page, { seed: 'offline', replicates: 400, step: true })
+  await go(page, { seed: 'offline', replicates: 1500, step: true })
   await page.locator('figure svg path.sim').first().waitFor()
   expect(new URL(page.url()).pathname).toContain('/under-way/')
-  await page.locator('h1').filter({ hasText: /^\s*[1-9].* of 400/ }).waitFor() // the workers walk: what they need is here
+  await page.locator('h1').filter({ hasText: /^\s*[1-9].* of 1.?500/ }).waitFor() // the workers walk: what they need is here
   await context.setOffline(true)
   await page.getByText('No connection.').first().waitFor()
   await page.getByText('Not yet sent.').waitFor()
@@ -54,7 +54,7 @@ it('keeps a run that finishes without a connection and sends it once when the co
   await context.setOffline(false)
   await page.getByText(/Saved \d\d:\d\d/).waitFor()
   const saved = await pier.savedRuns(scenarioId)
-  expect(saved).toMatchObject([{ replicates: 400, partial: false }])
+  expect(saved).toMatchObject([{ replicates: 1500, partial: false }])
   await page.getByRole('link', { name: 'Open it on the bench' }).click()
   expect(await atSavedRun(page)).toBe(saved[0]!.runId)
   expectQuiet(seen)

@@ -5,7 +5,7 @@ import { findChromium } from '../../../scripts/support/packages.mjs'
 import type { Visitor } from '../../support/visitor'
 
 /** Software rendering where there is no graphics card; no traffic of the browser's own. */
-const ARGUMENTS = ['--no-sandbox', '--use-angle=swiftshader', '--enable-unsafe-swiftshader', '--disable-background-networking', '--disable-component-update', '--disable-sync', '--no-first-run']
+const ARGUMENTS = ['--no-sandbox', '--use-angle=swiftshader', '--enable-unsafe-swiftshader', '--disable-background-networking', '--disable-component-update', '--disable-sync', '--no-first-run', '--disable-gpu-compositing']
 /** Longest wait for anything on a page [ms]: a busy machine is slow, a broken page never comes. */
 export const PATIENCE_MS = 45_000
 export const DESKTOP = { width: 1440, height: 900 }

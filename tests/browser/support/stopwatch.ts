@@ -1,5 +1,4 @@
 /** Times inside the page: from an input to the drawn curves, and tasks that hold the main thread. */
-import { availableParallelism, loadavg } from 'node:os'
 import type { Page } from 'playwright-core'
 
 export interface Drawn { /** Closed form changed [ms]. */ formulaMs: number, /** Closed form and walk changed, and the next frame begun [ms]. */ bothMs: number }
@@ -46,5 +45,5 @@ export function p95(values: readonly number[]): number {
   return sorted[Math.min(sorted.length - 1, Math.ceil(0.95 * sorted.length) - 1)]!
 }
 
-/** Four times the goal; where other work shares the cores, by as much more as there are processes a core. */
-export const slack = (): number => 4 * Math.max(1, loadavg()[0]! / availableParallelism())
+/** A test fails at so many times the goal: it guards against breakage, the goals themselves are measured on a machine that has nothing else to do. */
+export const SLACK = 4
