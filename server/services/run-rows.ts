@@ -1,6 +1,7 @@
 /** How runs are read: rows of lists, the detail with its outcome, the blocks behind it. */
-import { and, asc, desc, eq, isNotNull, isNull, lt } from 'drizzle-orm'
+import { and, asc, desc, eq, isNull, lt } from 'drizzle-orm'
 import type { z } from 'zod'
+import { inBin } from '../db/bin'
 import type { Handle } from '../db/client'
 import { runBlocks, runs, scenarios, users } from '../db/schema'
 import { may, reachOf } from '../../shared/permissions'
@@ -37,7 +38,7 @@ export async function listRuns(db: Handle, reader: Reader, query: z.output<typeo
   if (below !== null && !(Number.isInteger(below) && below > 0 && below < 2 ** 31)) throw badField('cursor', 'This is not a cursor from an earlier answer.')
   const found = await select(db).where(and(
     eq(runs.benchId, reader.benchId), scenarioId ? eq(runs.scenarioId, scenarioId) : undefined,
-    query.bin === '1' ? isNotNull(runs.deletedAt) : isNull(runs.deletedAt), below === null ? undefined : lt(runs.number, below),
+    query.bin === '1' ? inBin(runs.deletedAt) : isNull(runs.deletedAt), below === null ? undefined : lt(runs.number, below),
   )).orderBy(desc(runs.number)).limit(query.limit + 1)
   const rows = found.slice(0, query.limit).map(raw => asRow(raw, reader))
   const last = rows.at(-1)

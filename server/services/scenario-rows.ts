@@ -1,7 +1,8 @@
 /** How a scenario is read: one set of columns for the list, the detail and the answer of every change. */
-import { and, asc, desc, eq, isNotNull, isNull, sql, type SQL } from 'drizzle-orm'
+import { and, asc, desc, eq, isNull, sql, type SQL } from 'drizzle-orm'
 import { alias } from 'drizzle-orm/pg-core'
 import type { z } from 'zod'
+import { inBin } from '../db/bin'
 import type { Handle } from '../db/client'
 import { scenarioRevisions, scenarios, users } from '../db/schema'
 import { may, reachOf, type Role } from '../../shared/permissions'
@@ -46,7 +47,7 @@ export async function listScenarios(db: Handle, reader: Reader, query: z.output<
   const past = from && sql`(${KEYS[sort]}, ${scenarios.scenarioId}) ${order === 'asc' ? sql`>` : sql`<`} (${value}${sort === 'title' ? sql`::text` : sql`::timestamptz`}, ${from.id}::uuid)`
   const conditions: (SQL | undefined)[] = [
     eq(scenarios.benchId, reader.benchId),
-    bin === '1' ? isNotNull(scenarios.deletedAt) : isNull(scenarios.deletedAt),
+    bin === '1' ? inBin(scenarios.deletedAt) : isNull(scenarios.deletedAt),
     search ? sql`(position(lower(${search}) in lower(${scenarios.title})) > 0 or exists (select 1 from tags where tags.scenario_id = ${scenarios.scenarioId} and position(lower(${search}) in lower(tags.tag)) > 0))` : undefined,
     tag ? sql`exists (select 1 from tags where tags.scenario_id = ${scenarios.scenarioId} and tags.tag = ${tag})` : undefined,
     past ?? undefined,

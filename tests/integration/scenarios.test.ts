@@ -1,4 +1,5 @@
 // Scenarios: immutable revisions, edits that meet, lists that page, the bin, tags, copies.
+import { BIN_DAYS } from '../../shared/bin'
 import { afterAll, beforeAll, describe, expect, inject, it } from 'vitest'
 import type { BenchHome, Page } from '../../shared/schemas/api/bench'
 import type { RevisionDetail, RevisionRow, ScenarioDetail, ScenarioRow, StaleEdit } from '../../shared/schemas/api/scenario'
@@ -103,6 +104,21 @@ describe('the bin', () => {
     expect([await titles('0'), await titles('1')]).toEqual([[], ['To the bin']])
     expect((await lead.post<ScenarioDetail>(`${pathOf(scenario)}/restore`)).status).toBe(200)
     expect(await titles('0')).toEqual(['To the bin'])
+  })
+
+  it('keeps for thirty days; after them nothing of it is found or taken out', async () => {
+    const scenario = await makeScenario(member, benchId, { title: 'Long in the bin' })
+    await member.delete(pathOf(scenario))
+    const lay = (days: number) => world.database.ask(`update scenarios set deleted_at = now() - interval '${days} days' where scenario_id = '${scenario.scenarioId}'`)
+    const listed = async () => (await lead.get<Page<ScenarioRow>>(`/api/benches/${benchId}/scenarios?bin=1&search=long in the bin`)).body.rows.length
+    await lay(BIN_DAYS + 1)
+    expect(await listed()).toBe(0)
+    const never = await member.get('/api/scenarios/01890000-0000-7000-8000-000000000009')
+    const late = await member.post(`${pathOf(scenario)}/restore`)
+    expect([late.status, late.body]).toEqual([404, never.body])
+    await lay(BIN_DAYS - 1)
+    expect(await listed()).toBe(1)
+    expect((await member.post(`${pathOf(scenario)}/restore`)).status).toBe(200)
   })
 })
 

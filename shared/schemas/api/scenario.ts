@@ -35,7 +35,7 @@ export interface ScenarioDetail extends ScenarioRow {
 /** GET /api/scenarios/:scenarioId/revisions → RevisionRow[] (newest first) · GET …/revisions/:revision → RevisionDetail */
 export interface RevisionRow { revision: number, author: string, savedAt: string, message: string, digest: string, runs: number[] }
 export interface RevisionDetail extends RevisionRow { document: Scenario }
-/** DELETE /api/scenarios/:scenarioId (bin, 30 days) · POST /api/scenarios/:scenarioId/restore (from the bin) */
+/** DELETE /api/scenarios/:scenarioId (bin) · POST /api/scenarios/:scenarioId/restore (from the bin) */
 /** POST /api/scenarios/:scenarioId/revisions/:revision/restore, If-Match → ScenarioDetail: an old revision becomes the newest again */
 /** `problem.current` of a 412 */
 export interface StaleEdit { revision: number, author: string, savedAt: string }
