@@ -104,8 +104,18 @@ describe('a seed', () => {
 describe('an address', () => {
   it('takes only its methods and says which', async () => {
     const answer = await person.patch<Problem>('/api/account/me', {})
-    expect([answer.status, answer.headers.get('allow')]).toEqual([405, 'GET'])
+    expect([answer.status, answer.headers.get('allow')]).toEqual([405, 'HEAD, GET'])
     expect((await person.delete('/api/health')).status).toBe(405)
+  })
+  it('answers HEAD as GET without the body, and as nobody where nobody may look', async () => {
+    const head = async (path: string, cookie: string) => {
+      const answer = await fetch(world.server.base + path, { method: 'HEAD', headers: { cookie } })
+      return [answer.status, answer.headers.get('content-type'), await answer.text()]
+    }
+    expect(await head('/api/account/me', person.cookie)).toEqual([200, 'application/json', ''])
+    expect(await head('/api/account/me', '')).toEqual([401, 'application/problem+json', ''])
+    expect(await head('/api/account/sign-in', person.cookie)).toEqual([405, 'application/problem+json', ''])
+    expect((await head('/api/nothing', person.cookie))[0]).toBe(404)
   })
   it('that does not exist answers as problem details', async () => {
     for (const path of ['/api', '/api/', '/api/nothing', '/api/scenarios', '/api/_auth/session']) {
