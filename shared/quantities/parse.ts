@@ -9,6 +9,7 @@ export type Reading
     | { kind: 'missing', sentence: string }
     | { kind: 'refused', sentence: string }
 
+export interface ParseOptions { decimal?: '.' | ',', settled?: boolean }
 const LONGEST = 60 // characters; enough for any number with its unit
 const MINUS = /^[\u2212\uFF0D\uFE63\u2010-\u2013]/
 const NUMBER = /^([+-]?) ?((?:\d{1,3}(?: \d{3})+(?![\d])|\d{1,3}(?:'\d{3})+(?![\d])|\d+(?:[.,]\d{3})*(?![\d]))(?:[.,]\d*)?|\d+[.,]\d*|\d+|[.,]\d+)([eE][+-]?\d{1,4})?/
@@ -21,6 +22,14 @@ function plain(text: string): string {
   return text.replace(/[\uFF10-\uFF19\uFF0B\uFF0C\uFF0E\uFF05\uFF41-\uFF5A\uFF21-\uFF3A\uFF0F]/g, wide => String.fromCharCode(wide.charCodeAt(0) - 0xFEE0))
     .replace(/[\p{Zs}\t]+/gu, ' ').replace(/[\u2019\u02BC\u2018\uFF07]/g, '\'').replace(/\uFEFF/g, '').trim()
     .replace(MINUS, '-').replace(/([eE])[\u2212\u2010-\u2013]/, '$1-')
+}
+
+/** What digits and marks stand for once a person has settled the decimal mark: the other mark only groups. */
+function settledMeaning(mantissa: string, decimal: '.' | ','): string[] {
+  const [whole = '', part, ...more] = mantissa.split(decimal)
+  const grouped = /^(?:\d*|[1-9]\d{0,2}(?:([., '])\d{3})(?:\1\d{3})*)$/.test(whole)
+  if (more.length > 0 || !grouped || (part !== undefined && !/^\d*$/.test(part))) return []
+  return [`${whole.replace(/[., ']/g, '') || '0'}.${part || '0'}`]
 }
 
 /** Digits and marks to the texts they may stand for, each fit for a strict conversion; empty when the marks make no number. */
@@ -53,10 +62,10 @@ function strict(sign: string, digits: string, exponent: string): number | null {
  * Refuses hexadecimal, infinities, not-a-number, overflow, vanishing exponents, `1.2.3`, anything left over. `1,234` is asked back, unless the comma is declared to be the decimal mark.
  * @param text - as typed or pasted
  * @param unit - the field's unit; the value comes back in it
- * @param options - `decimal`: the mark that the person or the file has declared (default the point)
+ * @param options - `decimal`: the mark that the person or the file has declared (default the point); `settled`: the mark is beyond doubt, the other one only groups, and what does not fit is refused
  * @returns one of ok, ambiguous, missing, refused; never throws
  */
-export function parseQuantity(text: string, unit: UnitSymbol, options: { decimal?: '.' | ',' } = {}): Reading {
+export function parseQuantity(text: string, unit: UnitSymbol, options: ParseOptions = {}): Reading {
   const tidy = plain(text)
   if (tidy === '') return { kind: 'missing', sentence: 'A value is missing here.' }
   if (tidy.length > LONGEST) return refuse(`This is longer than ${LONGEST} characters; a number with its unit is wanted here.`)
@@ -65,7 +74,7 @@ export function parseQuantity(text: string, unit: UnitSymbol, options: { decimal
   const [whole, sign = '', mantissa = '', exponent = ''] = match
   const rest = tidy.slice(whole.length).trim()
   const typed = rest === '' ? unit : unitFrom(rest)
-  const found = meanings(mantissa, options.decimal ?? '.')
+  const found = (options.settled ? settledMeaning : meanings)(mantissa, options.decimal ?? '.')
   if (found.length === 0 || (typed === null && /^[\d.,' ]/.test(rest))) return refuse(`${quote(tidy)} is not one number.`)
   if (typed === null) return refuse(`${quote(rest)} after the number is no unit known here; ${quote(unit === '1' ? '%' : unit)} would be.`)
   if (UNITS[typed].dimension !== UNITS[unit].dimension) return refuse(`${typed} is a unit of ${UNITS[typed].dimension}; a ${UNITS[unit].dimension} is wanted here.`)
@@ -86,7 +95,7 @@ export function parseQuantity(text: string, unit: UnitSymbol, options: { decimal
  * @param options - `decimal`: the declared decimal mark
  * @returns the reading, its value without unit [1]
  */
-export function parsePlainNumber(text: string, options: { decimal?: '.' | ',' } = {}): Reading {
+export function parsePlainNumber(text: string, options: ParseOptions = {}): Reading {
   return parseQuantity(text, '1', options)
 }
 

@@ -3,7 +3,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { UNITS, convert, formatForField, formatInterval, formatNumber, formatQuantity, formatTime, formatWithError, parsePlainNumber, parseQuantity, percentHint, unitFrom, type UnitSymbol } from '../../shared/units'
 
-const value = (text: string, unit: UnitSymbol = '1', options?: { decimal?: '.' | ',' }) => {
+const value = (text: string, unit: UnitSymbol = '1', options?: { decimal?: '.' | ',', settled?: boolean }) => {
   const reading = parseQuantity(text, unit, options)
   return reading.kind === 'ok' ? reading.value : reading.kind
 }
@@ -29,6 +29,13 @@ describe('parseQuantity', () => {
     expect(value('1,234', '1', { decimal: ',' })).toBe(1.234)
     expect(value('1.234', '1', { decimal: ',' })).toBe('ambiguous')
     expect(value('1,234', '1', { decimal: '.' })).toBe('ambiguous')
+  })
+  it.each([
+    ['1,234', '.', 1234], ['1,234', ',', 1.234], ['1.234', '.', 1.234], ['1.234', ',', 1234], ['12,8', ',', 12.8], ['12,8', '.', 'refused'], ['0,125', '.', 'refused'],
+    ['0.150', ',', 'refused'], ['1,234.5', '.', 1234.5], ['1,234.5', ',', 'refused'], ['1.234,5', ',', 1234.5], ['1,234,567', '.', 1234567], ['1,234,567', ',', 'refused'],
+    ['1 234,5', ',', 1234.5], ['1\u202F234', '.', 1234], ['1\'234.5', '.', 1234.5], ['−3,5', ',', -3.5], ['.5', '.', 0.5], ['5.', '.', 5], ['42', ',', 42], ['1e-3', ',', 1e-3],
+  ] as const)('reads %j as %s once the mark %s is settled', (text, decimal, expected) => {
+    expect(value(text, '1', { decimal, settled: true })).toBe(expected)
   })
   it('reads units and converts to the field\'s own', () => {
     expect(value('0.05 um', 'nm')).toBe(50)
