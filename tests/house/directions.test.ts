@@ -12,7 +12,7 @@ const MAY_IMPORT: Record<string, string[]> = {
   server: ['server', 'shared', 'workers'],
   app: ['app', 'shared', 'workers'],
 }
-const PURE_PACKAGES = ['zod', 'seedrandom', '@noble/hashes', 'canonicalize']
+const PURE_PACKAGES = ['zod', 'seedrandom', '@noble/hashes', 'canonicalize', 'papaparse']
 
 function strayImports(room: string, allowed: (specifier: string, target: string | null, path: string) => boolean): string[] {
   return filesOf(room).flatMap(path => importsOf(path).filter(specifier => !allowed(specifier, targetOf(path, specifier), path)).map(specifier => `${path} imports ${specifier}`))
