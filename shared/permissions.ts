@@ -19,6 +19,14 @@ const TABLE = {
   /** A trainee's run is saved only after a prediction; until predictions exist the server answers 409. */
   'run.save': { lead: 'all', member: 'all', trainee: 'own', guest: 'none' },
   'run.delete': { lead: 'all', member: 'own', trainee: 'own', guest: 'none' },
+  'recording.read': { lead: 'all', member: 'all', trainee: 'all', guest: 'shared' },
+  'recording.create': { lead: 'all', member: 'all', trainee: 'own', guest: 'none' },
+  'recording.edit': { lead: 'all', member: 'all', trainee: 'own', guest: 'none' },
+  'recording.delete': { lead: 'all', member: 'own', trainee: 'own', guest: 'none' },
+  'weigh-up.read': { lead: 'all', member: 'all', trainee: 'all', guest: 'shared' },
+  'weigh-up.create': { lead: 'all', member: 'all', trainee: 'own', guest: 'none' },
+  'weigh-up.edit': { lead: 'all', member: 'all', trainee: 'own', guest: 'none' },
+  'weigh-up.delete': { lead: 'all', member: 'own', trainee: 'own', guest: 'none' },
 } satisfies Record<string, Record<Role, Reach>>
 
 export type Action = keyof typeof TABLE

@@ -1,7 +1,7 @@
 /** What the application's role may do: read and write rows, never change tables; immutable rows only be added and read. */
 
 /** Tables whose rows are written once. */
-export const WRITTEN_ONCE = ['scenario_revisions', 'run_blocks', 'audit_events'] as const
+export const WRITTEN_ONCE = ['scenario_revisions', 'run_blocks', 'audit_events', 'uploads', 'fits', 'weigh_up_versions'] as const
 /** Columns of a saved run that may change afterwards. */
 export const RUN_COLUMNS_OPEN = ['audit_state', 'audit_blocks', 'audit_detection', 'audit_at', 'deleted_at', 'deleted_by'] as const
 
@@ -14,5 +14,7 @@ export function grantsFor(role: string): string {
     grant select, insert, update, delete on all tables in schema public to "${role}";
     ${WRITTEN_ONCE.map(table => `revoke update, delete on ${table} from "${role}";`).join('\n    ')}
     revoke update, delete on runs from "${role}";
-    grant update (${RUN_COLUMNS_OPEN.join(', ')}) on runs to "${role}";`
+    grant update (${RUN_COLUMNS_OPEN.join(', ')}) on runs to "${role}";
+    revoke update, delete on recording_points from "${role}";
+    grant update (aside) on recording_points to "${role}";`
 }

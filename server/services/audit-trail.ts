@@ -9,6 +9,8 @@ export interface AuditEntry {
   scenarioId?: string | null
   revision?: number | null
   runId?: string | null
+  recordingId?: string | null
+  weighUpId?: string | null
   subjectId?: string | null
   note?: string
   at?: Date

@@ -2,11 +2,11 @@
 import { and, eq, sql } from 'drizzle-orm'
 import { isReachable } from '../db/bin'
 import type { Handle } from '../db/client'
-import { benches, memberships, runs, scenarios } from '../db/schema'
+import { benches, memberships, recordings, runs, scenarios, weighUps } from '../db/schema'
 import type { Role } from '../../shared/permissions'
 
 export interface Scope {
-  kind: 'bench' | 'scenario' | 'run'
+  kind: 'bench' | 'scenario' | 'run' | 'recording' | 'weigh-up'
   benchId: string
   itemId: string
   /** Who made the item; on a bench nobody. */
@@ -23,16 +23,19 @@ export async function findBenchScope(db: Handle, benchId: string, userId: string
   return row && { kind: 'bench', benchId, itemId: benchId, ownerId: null, deleted: false, role: row.role }
 }
 
-export async function findScenarioScope(db: Handle, scenarioId: string, userId: string): Promise<Scope | undefined> {
-  const [row] = await db.select({ benchId: scenarios.benchId, ownerId: scenarios.createdBy, deleted: sql<boolean>`${scenarios.deletedAt} is not null`, role: memberships.role })
-    .from(scenarios).leftJoin(memberships, and(eq(memberships.benchId, scenarios.benchId), eq(memberships.userId, userId)))
-    .where(and(eq(scenarios.scenarioId, scenarioId), isReachable(scenarios.deletedAt)))
-  return row && { kind: 'scenario', itemId: scenarioId, ...row }
-}
+/** Tables whose rows belong to a bench, are made by someone and can lie in the bin. */
+const ITEMS = {
+  'scenario': { table: scenarios, id: scenarios.scenarioId, owner: scenarios.createdBy },
+  'run': { table: runs, id: runs.runId, owner: runs.savedBy },
+  'recording': { table: recordings, id: recordings.recordingId, owner: recordings.createdBy },
+  'weigh-up': { table: weighUps, id: weighUps.weighUpId, owner: weighUps.createdBy },
+} as const
+export type ItemKind = keyof typeof ITEMS
 
-export async function findRunScope(db: Handle, runId: string, userId: string): Promise<Scope | undefined> {
-  const [row] = await db.select({ benchId: runs.benchId, ownerId: runs.savedBy, deleted: sql<boolean>`${runs.deletedAt} is not null`, role: memberships.role })
-    .from(runs).leftJoin(memberships, and(eq(memberships.benchId, runs.benchId), eq(memberships.userId, userId)))
-    .where(and(eq(runs.runId, runId), isReachable(runs.deletedAt)))
-  return row && { kind: 'run', itemId: runId, ...row }
+export async function findItemScope(db: Handle, kind: ItemKind, itemId: string, userId: string): Promise<Scope | undefined> {
+  const { table, id, owner } = ITEMS[kind]
+  const [row] = await db.select({ benchId: table.benchId, ownerId: owner, deleted: sql<boolean>`${table.deletedAt} is not null`, role: memberships.role })
+    .from(table).leftJoin(memberships, and(eq(memberships.benchId, table.benchId), eq(memberships.userId, userId)))
+    .where(and(eq(id, itemId), isReachable(table.deletedAt)))
+  return row && { kind, itemId, ...row }
 }

@@ -1,7 +1,7 @@
 /** Every handler says in its first line who may come: `publicRoute`, `signedIn` or `requireMember`. `routes.ts` lists the same for all. */
 import { getRouterParam, type H3Event } from 'h3'
 import { may, type Action, type Role } from '../../shared/permissions'
-import { findBenchScope, findRunScope, findScenarioScope, type Scope } from '../services/scopes'
+import { findBenchScope, findItemScope, type ItemKind, type Scope } from '../services/scopes'
 import type { Person } from '../services/sessions'
 import { idParam } from './input'
 import { personOf } from './person'
@@ -20,7 +20,7 @@ export async function signedIn(event: H3Event): Promise<Person> {
 }
 
 /** Actions that make something new: whose the item in the path is does not matter. */
-const MAKES_NEW = new Set<Action>(['scenario.create', 'run.save'])
+const MAKES_NEW = new Set<Action>(['scenario.create', 'run.save', 'recording.create', 'weigh-up.create'])
 
 /**
  * The person as a member of the bench behind the path, or a refusal: 401 signed out · 404 what they may not know of ·
@@ -32,15 +32,15 @@ export async function requireMember(event: H3Event, action: Action, options: { b
   const scope = await scopeOf(event, person.userId)
   if (!scope?.role || (scope.deleted && !options.bin)) throw problem('not_found')
   const item = scope.kind === 'bench' ? undefined : { owns: scope.ownerId === person.userId, shared: false }
-  if (item && !may(scope.role, scope.kind === 'run' ? 'run.read' : 'scenario.read', item)) throw problem('not_found')
+  if (scope.kind !== 'bench' && !may(scope.role, `${scope.kind}.read`, item)) throw problem('not_found')
   if (!may(scope.role, action, MAKES_NEW.has(action) ? undefined : item)) throw problem('not_allowed')
   return { ...person, benchId: scope.benchId, role: scope.role, itemId: scope.itemId }
 }
 
+const PARAMETERS: [string, ItemKind][] = [['runId', 'run'], ['scenarioId', 'scenario'], ['recordingId', 'recording'], ['weighUpId', 'weigh-up']]
 /** The innermost thing that the path names decides. */
 function scopeOf(event: H3Event, userId: string): Promise<Scope | undefined> {
   const db = useDatabase()
-  if (getRouterParam(event, 'runId') !== undefined) return findRunScope(db, idParam(event, 'runId'), userId)
-  if (getRouterParam(event, 'scenarioId') !== undefined) return findScenarioScope(db, idParam(event, 'scenarioId'), userId)
+  for (const [parameter, kind] of PARAMETERS) if (getRouterParam(event, parameter) !== undefined) return findItemScope(db, kind, idParam(event, parameter), userId)
   return findBenchScope(db, idParam(event, 'benchId'), userId)
 }

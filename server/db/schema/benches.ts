@@ -11,6 +11,7 @@ export const benches = pgTable('benches', {
   createdAt: now('created_at'),
   /** Runs are numbered within a bench, without gaps: this is the last number given. */
   runsNumbered: integer('runs_numbered').notNull().default(0),
+  weighUpsNumbered: integer('weigh_ups_numbered').notNull().default(0),
 }, table => [
   check('benches_name_length', sql`char_length(${table.name}) between 1 and 120`),
   check('benches_runs_numbered', sql`${table.runsNumbered} >= 0`),
