@@ -1,0 +1,50 @@
+/** What a person chose of a reading; everything left out is guessed. Kept with the recording, so that it reads so again. */
+import { z } from 'zod'
+import { fieldProblems, type FieldProblem } from '../schemas/problem'
+import { MEANINGS } from './reading'
+
+const line = z.number().int().min(1)
+
+export const ReadingChoicesSchema = z.strictObject({
+  encoding: z.enum(['utf-8', 'utf-16le', 'utf-16be', 'windows-1252']).optional(),
+  separator: z.enum([',', ';', '\t']).optional(),
+  decimal: z.enum(['.', ',']).optional(),
+  /** Line of the header; null says that there is none. */
+  headerLine: line.nullable().optional(),
+  /** Line of the units; null says that there is none. */
+  unitLine: line.nullable().optional(),
+  /** By column index as text: `{"0": "interval"}`. */
+  columns: z.record(z.string().regex(/^(0|[1-9]\d{0,2})$/, 'A column is a whole number from 0.'), z.enum(MEANINGS)).optional(),
+  timeUnit: z.enum(['ms', 's', 'min']).optional(),
+  ratioScale: z.enum(['ratio', 'percent']).optional(),
+  /** Scale of SD, SEM and limits; that of the ratio where nothing is said. */
+  errorScale: z.enum(['ratio', 'percent']).optional(),
+  /** n for every point that has none; null says that it is not known. */
+  missingN: z.number().int().min(1).max(100_000).nullable().optional(),
+  /** An error of 0: not known, or the smallest that is above 0 in its condition. */
+  zeroError: z.enum(['missing', 'smallest']).optional(),
+  /** Two rows of one interval: two points, or one weighted by n. */
+  duplicates: z.enum(['keep', 'merge']).optional(),
+  /** Rows with too few or too many cells. */
+  ragged: z.enum(['take', 'leave']).optional(),
+  /** Names that stand only in the first of several rows hold for the rows below. */
+  fillDown: z.boolean().optional(),
+  /** Lines that a person took out, by line as text, each with its reason. */
+  leftOut: z.record(z.string().regex(/^[1-9]\d*$/, 'A line is a whole number from 1.'), z.string().min(1).max(200)).optional(),
+  /** Name of the condition where the file names none. */
+  condition: z.string().min(1).max(120).optional(),
+  protocol: z.string().min(1).max(120).optional(),
+  manipulation: z.string().min(1).max(120).optional(),
+})
+export type ReadingChoices = z.output<typeof ReadingChoicesSchema>
+
+/**
+ * Judges choices that came from outside.
+ * @param input - any JSON
+ * @returns the choices, or what is wrong with them, by path
+ */
+export function parseChoices(input: unknown): { ok: true, choices: ReadingChoices } | { ok: false, problems: FieldProblem[] } {
+  const parsed = ReadingChoicesSchema.safeParse(input)
+  if (parsed.success) return { ok: true, choices: parsed.data }
+  return { ok: false, problems: fieldProblems(parsed.error.issues).map(one => ({ ...one, path: one.path ? `choices.${one.path}` : 'choices' })) }
+}
