@@ -18,19 +18,18 @@ export function triangularise(matrix: Float64Array, right: Float64Array, rows: n
     const first = pivot - length
     // v = (first, the rest of the column); the reflection is I − v·vᵀ / half, half = vᵀv / 2 = −length · first.
     const half = -length * first
-    for (let j = k + 1; j <= columns; j++) {
-      const at = (i: number) => j < columns ? matrix[i * columns + j]! : right[i]!
-      let dot = first * at(k)
-      for (let i = k + 1; i < rows; i++) dot += matrix[i * columns + k]! * at(i)
+    for (let j = k + 1; j < columns; j++) {
+      let dot = first * matrix[k * columns + j]!
+      for (let i = k + 1; i < rows; i++) dot += matrix[i * columns + k]! * matrix[i * columns + j]!
       const factor = dot / half
-      if (j < columns) {
-        matrix[k * columns + j]! -= factor * first
-        for (let i = k + 1; i < rows; i++) matrix[i * columns + j]! -= factor * matrix[i * columns + k]!
-      } else {
-        right[k]! -= factor * first
-        for (let i = k + 1; i < rows; i++) right[i]! -= factor * matrix[i * columns + k]!
-      }
+      matrix[k * columns + j]! -= factor * first
+      for (let i = k + 1; i < rows; i++) matrix[i * columns + j]! -= factor * matrix[i * columns + k]!
     }
+    let dot = first * right[k]!
+    for (let i = k + 1; i < rows; i++) dot += matrix[i * columns + k]! * right[i]!
+    const factor = dot / half
+    right[k]! -= factor * first
+    for (let i = k + 1; i < rows; i++) right[i]! -= factor * matrix[i * columns + k]!
     matrix[k * columns + k] = length
     for (let i = k + 1; i < rows; i++) matrix[i * columns + k] = 0
   }
