@@ -18,6 +18,10 @@ export function useBenchItems<Row, Name extends string>({ kind, keys, id, nameOf
   const { query, set } = useListQuery<Name | 'bin'>([...keys, 'bin'])
   const inBin = computed(() => query.value.bin === '1')
   const paged = usePaged<Row>(() => benchId.value ? `/api/benches/${benchId.value}/${kind}` : null, () => ({ ...query.value }))
+  // An address that was typed by hand or cut off: the list without it instead of a page that cannot be drawn.
+  watch(paged.refusal, (refusal) => {
+    if (refusal?.code === 'bad_input') set(Object.fromEntries(keys.map(name => [name, undefined])) as Partial<Record<Name | 'bin', undefined>>)
+  })
   const empty = computed(() => paged.known.value && paged.rows.value.length === 0)
   /** The last thing done, with its way back. */
   const done = shallowRef<{ sentence: string, back?: () => unknown }>()

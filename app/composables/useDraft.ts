@@ -7,7 +7,33 @@ export interface Draft extends EditorSnapshot {
   keptAt: string
 }
 const KEEP_AFTER_MS = 300
-const keyOf = (userId: string, scenarioId: string) => `moorage:draft:${userId}:${scenarioId}`
+/** Each tab keeps its own, so that two tabs on one scenario lose nothing to each other. */
+const keysOf = (userId: string, scenarioId: string) => `moorage:draft:${userId}:${scenarioId}:`
+const TAB = 'moorage:tab'
+
+/** Name of this tab: it survives a reload and ends with the tab. */
+function tabName(): string {
+  try {
+    const name = sessionStorage.getItem(TAB) ?? crypto.randomUUID()
+    sessionStorage.setItem(TAB, name)
+    return name
+  } catch {
+    return 'only'
+  }
+}
+/** This tab's draft, else the newest that a tab left: that one may be closed. */
+function findDraft(prefix: string, own: string): { key: string, draft: Draft } | undefined {
+  const mine = readDraft(own)
+  if (mine) return { key: own, draft: mine }
+  try {
+    return Object.keys(localStorage).filter(key => key.startsWith(prefix)).flatMap((key) => {
+      const draft = readDraft(key)
+      return draft ? [{ key, draft }] : []
+    }).sort((a, b) => b.draft.keptAt.localeCompare(a.draft.keptAt))[0]
+  } catch {
+    return undefined
+  }
+}
 
 function readDraft(key: string): Draft | undefined {
   try {
@@ -21,7 +47,9 @@ function readDraft(key: string): Draft | undefined {
 
 /** Keeps what is typed within 0.3 s; `keptAt` is null when nothing is kept, `failed` when the device refuses to keep it. */
 export function useDraft(userId: string, scenarioId: string) {
-  const key = keyOf(userId, scenarioId)
+  const prefix = keysOf(userId, scenarioId)
+  const key = `${prefix}${import.meta.client ? tabName() : ''}`
+  let found: string | undefined
   const keptAt = shallowRef<string | null>(null)
   const failed = shallowRef(false)
   let timer: ReturnType<typeof setTimeout> | undefined
@@ -53,12 +81,16 @@ export function useDraft(userId: string, scenarioId: string) {
     keptAt.value = null
     try {
       localStorage.removeItem(key)
+      // What another tab left was taken over here and is settled with it.
+      if (found) localStorage.removeItem(found)
     } catch { /* nothing was kept, so nothing is lost */ }
+    found = undefined
   }
   const restore = () => {
-    const draft = readDraft(key)
-    if (draft) keptAt.value = draft.keptAt
-    return draft
+    const kept = findDraft(prefix, key)
+    if (kept) keptAt.value = kept.draft.keptAt
+    found = kept?.key
+    return kept?.draft
   }
   if (import.meta.client) addEventListener('pagehide', flush)
   onScopeDispose(() => {

@@ -34,6 +34,9 @@ export function useScenarioEditing(detail: () => ScenarioDetail | null, start: S
     if (kept) {
       state.restart(detail()?.document ?? start, { document: kept.document, wrong: kept.wrong })
       from.value = kept.revision
+      const now = detail()
+      if (now && now.revision > kept.revision && state.edited.value)
+        conflict.value = { current: { revision: now.revision, author: now.updatedBy, savedAt: now.updatedAt }, from: kept.revision, differences: scenarioDifferences(now.document, kept.document) }
     }
     watch(state.now, (snapshot) => {
       if (state.edited.value) draft.keep(snapshot, from.value)

@@ -1,6 +1,7 @@
 /** Who is signed in, on which bench, and what that role may do. The server decides again at every request. */
 import { may, type Action, type Role } from '#shared/permissions'
 import type { Me } from '#shared/schemas/api/account'
+import { SESSION_CHANNEL } from '~/utils/sessionChannel'
 
 export const useSessionStore = defineStore('session', () => {
   const api = useApi()
@@ -29,18 +30,28 @@ export const useSessionStore = defineStore('session', () => {
     away.value = null
     known.value = true
   }
+  /** Other tabs of this browser share the cookie; app/plugins/other-tabs.client.ts listens there. */
+  function announce(): void {
+    if (!import.meta.client) return
+    const channel = new BroadcastChannel(SESSION_CHANNEL)
+    channel.postMessage(me.value?.userId ?? null)
+    channel.close()
+  }
   async function signIn(given: { mail: string, passPhrase: string }): Promise<void> {
     me.value = await api<Me>('/api/account/sign-in', { method: 'POST', body: given })
     known.value = true
+    announce()
   }
   async function register(given: { mail: string, name: string, passPhrase: string }): Promise<void> {
     me.value = await api<Me>('/api/account/register', { method: 'POST', body: given })
     known.value = true
+    announce()
   }
   async function signOut(everywhere = false): Promise<void> {
     if (everywhere) await api('/api/account/sessions', { method: 'DELETE' })
     else await api('/api/account/sign-out', { method: 'POST' })
     me.value = null
+    announce()
   }
   function chooseBench(benchId: string): void {
     chosenBench.value = benchId

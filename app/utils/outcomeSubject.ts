@@ -1,5 +1,4 @@
 /** An outcome with where it comes from, whether it lies on the bench or on this device. */
-import type { RevisionDetail } from '#shared/schemas/api/scenario'
 import type { RunAudit, RunDetail } from '#shared/schemas/api/run'
 import type { Outcome } from '#shared/schemas/outcome'
 import type { Scenario } from '#shared/schemas/scenario'
@@ -23,9 +22,9 @@ export interface OutcomeSubject {
   audit: RunAudit | null
 }
 
-export function subjectOfSaved(run: RunDetail, revision: RevisionDetail): OutcomeSubject {
+export function subjectOfSaved(run: RunDetail): OutcomeSubject {
   return {
-    outcome: run.outcome, scenario: revision.document, title: run.title, scenarioId: run.scenarioId, revision: run.revision, number: run.number, runId: run.runId, localId: null,
+    outcome: run.outcome, scenario: run.document, title: run.title, scenarioId: run.scenarioId, revision: run.revision, number: run.number, runId: run.runId, localId: null,
     replicatesAsked: run.replicatesAsked, durationMs: run.durationMs, workers: run.workers, who: run.savedBy, at: run.savedAt, audit: run.audit,
   }
 }

@@ -70,7 +70,7 @@ export function outcomeNumbers(outcome: Outcome, style: NumberStyle = {}): Sente
 }
 
 /** Time left as people say it: seconds, from two minutes on minutes, from two hours on hours. */
-function leftWords(seconds: number): string {
+export function leftWords(seconds: number): string {
   if (seconds < 120) return `${Math.max(1, Math.round(seconds))}\u00A0s`
   return seconds < 7200 ? `${Math.round(seconds / 60)}\u00A0min` : `${Math.round(seconds / 3600)}\u00A0h`
 }
@@ -83,8 +83,10 @@ export function soFarSentence(done: number, wanted: number, remainingMs: number 
   return [...head, { text: `So far the walk takes ${ratioText(outcome.ratio.value, style)} times as long as the closed form ` }, { text: interval(outcome.ratio, style, ''), quiet: true }, { text: '.' }]
 }
 
-const SUPPLY: Record<Scenario['reservoir']['supply'], string> = {
-  stirred: 'the neighbourhood redrawn at every step', held: 'the far boundary kept at the resting density', sealed: 'a sealed terminal',
+function supplyWords({ reservoir }: Scenario): string {
+  if (reservoir.supply === 'stirred') return 'the neighbourhood redrawn at every step'
+  if (reservoir.supply === 'held') return `the boundary ${reservoir.marginSites} voxels from the ribbon kept at the resting density`
+  return `a sealed terminal of ${reservoir.sizeUm.join(' × ')} µm`
 }
 function ribbonWords({ ribbon }: Scenario): string {
   if (ribbon.shape === 'isolated') return 'one site in the middle of a wide wall'
@@ -99,12 +101,14 @@ export function outcomeMethods(scenario: Scenario, outcome: Outcome, revision: n
   const kinds = outcome.classes.filter(kind => kind.sites > 0)
   const attach = kinds.map(kind => `${number(kind.attachProbability)} at ${kind.sites}${kinds.length > 1 ? ` ${kind.name}` : ''} sites`).join(' and ')
   const extra = [
-    medium.crowding === 'exclusive' ? 'vesicles exclude each other' : '', schedule.decline ? `attachment declining to ${number(schedule.decline.restFactor)} with ${formatTime(schedule.decline.timeConstantS, style)}` : '',
+    medium.crowding === 'exclusive' ? 'vesicles exclude each other' : 'vesicles pass each other freely', schedule.decline ? `attachment declining to ${number(schedule.decline.restFactor)} with ${formatTime(schedule.decline.timeConstantS, style)}` : '',
     sites.some(site => site.detachPerS > 0) ? 'sites that let go' : '', sites.some(site => site.readyPerS !== null) ? 'captured vesicles becoming ready' : '',
   ].filter(Boolean)
+  const { ratio, agreement } = outcome
+  const found = ratio.value === null ? '' : `walk over closed form ${ratioText(ratio.value, style)} ${interval(ratio, style, '')}, read against a margin of ±${agreement.marginPercent}\u00A0%; `
   return `Refill of ${ribbonWords(scenario)} was simulated with Moorage (engine ${outcome.engine.algorithm} ${outcome.engine.version}): vesicles of ${number(medium.spacingNm)} nm at ${number(medium.densityPerUm3)} per µm³ with D ${number(medium.diffusionUm2PerS)} µm²/s, `
-    + `${SUPPLY[scenario.reservoir.supply]}${extra.length > 0 ? `, ${extra.join(', ')}` : ''}; attachment per hit ${attach}; ${number(1 - schedule.initialFill)} of the sites emptied; `
-    + `${outcome.replicates} replicates${outcome.partial ? ' (partial)' : ''}, seed ‘${outcome.seed}’, lattice step ${formatTime(stepSeconds(medium), style)}, scenario ${outcome.scenarioDigest.slice(0, 12)}${revision === null ? '' : ` (revision ${revision})`}, outcome ${outcome.digest.slice(0, 12)}; intervals are 95\u00A0%, from whole replicates.`
+    + `${supplyWords(scenario)}${extra.length > 0 ? `, ${extra.join(', ')}` : ''}; attachment per hit ${attach}; ${number(1 - schedule.initialFill)} of the sites emptied and watched for ${formatTime(schedule.durationS, style)}; `
+    + `${outcome.replicates} replicates${outcome.partial ? ' (partial)' : ''}, seed ‘${outcome.seed}’, lattice step ${formatTime(stepSeconds(medium), style)}, scenario ${outcome.scenarioDigest.slice(0, 12)}${revision === null ? '' : ` (revision ${revision})`}, outcome ${outcome.digest.slice(0, 12)}; ${found}intervals are 95\u00A0%, from whole replicates.`
 }
 
 /** `p = 0.31` or `p < 10^−6`. */

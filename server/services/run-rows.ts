@@ -1,9 +1,9 @@
 /** How runs are read: rows of lists, the detail with its outcome, the blocks behind it. */
-import { and, asc, desc, eq, isNull, lt } from 'drizzle-orm'
+import { and, asc, desc, eq, isNull, lt, sql } from 'drizzle-orm'
 import type { z } from 'zod'
 import { inBin } from '../db/bin'
 import type { Handle } from '../db/client'
-import { runBlocks, runs, scenarios, users } from '../db/schema'
+import { runBlocks, runs, scenarioRevisions, scenarios, users } from '../db/schema'
 import { may, reachOf } from '../../shared/permissions'
 import type { Page } from '../../shared/schemas/api/bench'
 import type { RunDetail, RunListSchema, RunRow } from '../../shared/schemas/api/run'
@@ -47,7 +47,11 @@ export async function listRuns(db: Handle, reader: Reader, query: z.output<typeo
 
 export async function describeRun(db: Handle, reader: Reader, runId: string): Promise<RunDetail> {
   const [raw] = await select(db).where(eq(runs.runId, runId))
-  const [rest] = await db.select({ outcome: runs.outcome, durationMs: runs.durationMs, workers: runs.workers, replicatesAsked: runs.replicatesAsked }).from(runs).where(eq(runs.runId, runId))
+  const [rest] = await db.select({
+    outcome: runs.outcome, durationMs: runs.durationMs, workers: runs.workers, replicatesAsked: runs.replicatesAsked,
+    document: scenarioRevisions.document, scenarioBinned: sql<boolean>`${scenarios.deletedAt} is not null`,
+  }).from(runs).innerJoin(scenarios, eq(scenarios.scenarioId, runs.scenarioId))
+    .innerJoin(scenarioRevisions, and(eq(scenarioRevisions.scenarioId, runs.scenarioId), eq(scenarioRevisions.revision, runs.revision))).where(eq(runs.runId, runId))
   if (!raw || !rest) throw problem('not_found')
   return { ...asRow(raw, reader), benchId: raw.benchId, ...rest }
 }

@@ -1,5 +1,5 @@
 /** Every handler says in its first line who may come: `publicRoute`, `signedIn` or `requireMember`. `routes.ts` lists the same for all. */
-import { getRouterParam, type H3Event } from 'h3'
+import { getHeader, getRouterParam, type H3Event } from 'h3'
 import { may, type Action, type Role } from '../../shared/permissions'
 import { findBenchScope, findItemScope, type ItemKind, type Scope } from '../services/scopes'
 import type { Person } from '../services/sessions'
@@ -16,6 +16,9 @@ export function publicRoute(_event: H3Event): void {}
 export async function signedIn(event: H3Event): Promise<Person> {
   const person = await personOf(event)
   if (!person) throw problem('sign_in_first')
+  const meant = getHeader(event, 'x-moorage-person')
+  // The page belongs to an account that is not the one signed in any more: nothing is done in another's name.
+  if (meant !== undefined && meant !== person.userId) throw problem('sign_in_first', { detail: 'Another account is signed in here now. Sign in again as the one that this page belongs to.' })
   return person
 }
 

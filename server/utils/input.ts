@@ -19,6 +19,15 @@ export async function readRaw(event: H3Event, limitBytes = useRuntimeConfig(even
   return readCapped(event, limitBytes)
 }
 
+/** The bytes of a file, capped; nothing is parsed. */
+export async function readFile(event: H3Event, limitBytes: number): Promise<Buffer> {
+  const type = (getHeader(event, 'content-type') ?? '').split(';')[0]!.trim().toLowerCase()
+  if (type !== 'application/octet-stream' || (getHeader(event, 'content-encoding') ?? 'identity') !== 'identity') throw problem('wrong_type', { detail: 'A file is sent as application/octet-stream.' })
+  const bytes = await readCapped(event, limitBytes)
+  if (bytes.length === 0) throw badField('file', 'This file is empty: it has no rows.')
+  return bytes
+}
+
 /** JSON body of a request, by schema. */
 export async function readInput<Schema extends z.ZodType>(event: H3Event, schema: Schema): Promise<z.output<Schema>> {
   const raw = await readRaw(event)

@@ -143,6 +143,42 @@ it('restores a draft after the page was killed within two seconds of typing', as
   await leave()
 })
 
+it('keeps apart what two tabs of one person type', async () => {
+  const { scenarioId } = await pier.scenario()
+  const { context, page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`)
+  const second = await context.newPage()
+  await visit(second, `${pier.base}/scenarios/${scenarioId}`)
+  await enter(page, QUICK, '0.17')
+  await draftKept(page)
+  await enter(second, 'medium.densityPerUm3', '650')
+  await draftKept(second)
+  const held = async (tab: Page) => {
+    await pier.reload(tab)
+    await draftKept(tab)
+    return [await box(tab, QUICK).inputValue(), await box(tab, 'medium.densityPerUm3').inputValue()]
+  }
+  expect(await held(page)).toEqual(['0.17', '800'])
+  expect(await held(second)).toEqual(['0.3', '650'])
+  expectQuiet(seen)
+  await leave()
+})
+
+it('says at once that a kept draft was made from an earlier revision than the newest', async () => {
+  const { scenarioId, document } = await pier.scenario()
+  const { page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`)
+  await enter(page, QUICK, '0.17')
+  await draftKept(page)
+  const other = await pier.person('Quicker Person', 'member')
+  expect((await other.put(`/api/scenarios/${scenarioId}`, { document: { ...document, notes: 'Quicker.' } }, { 'if-match': '"1"' })).status).toBe(200)
+  await pier.reload(page)
+  const alert = page.getByRole('alert').filter({ hasText: 'Saved meanwhile' })
+  await alert.waitFor()
+  expect(await words(alert)).toMatch(/Quicker Person saved revision 2 at\s+\d\d:\d\d, while you were editing revision 1/)
+  expect(await box(page, QUICK).inputValue()).toBe('0.17')
+  expectQuiet(seen)
+  await leave()
+})
+
 it('undoes and redoes by key, field by field', async () => {
   const { scenarioId } = await pier.scenario()
   const { page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`)
@@ -172,7 +208,7 @@ it('tells the second of two people who saved and when, and keeps theirs as a cop
   await first.page.getByRole('button', { name: 'Save as revision 2' }).click()
   await eventually(async () => (await read(pier, scenarioId)).revision).toBe(2)
   await second.page.getByRole('button', { name: 'Save as revision 2' }).click()
-  const alert = second.page.getByRole('alert').filter({ hasText: 'Saved by somebody else meanwhile' })
+  const alert = second.page.getByRole('alert').filter({ hasText: 'Saved meanwhile' })
   await alert.waitFor()
   expect(await words(alert)).toMatch(/Lead Person saved revision 2 at\s+\d\d:\d\d, while you were editing revision 1/)
   expect(await alert.locator('tbody tr').allTextContents()).toHaveLength(1)

@@ -81,6 +81,29 @@ it('sends a run whose answer was lost again, and the bench has it once', async (
   await leave()
 })
 
+it('saves nothing under the name of another account that signed in meanwhile, and follows a sign-out in another tab', async () => {
+  const { scenarioId } = await pier.scenario(SLOW)
+  const other = await pier.person('Next At The Rig', 'member')
+  const { context, page, leave } = await pier.seat(`/scenarios/${scenarioId}`, { expected: [/status of 401/] })
+  await go(page, { seed: 'whose', replicates: 400, step: true })
+  await page.locator('h1').filter({ hasText: /^\s*[1-9].* of 400/ }).waitFor()
+  const [name, value] = other.cookie.split(/=(.*)/s) as [string, string]
+  const [mine] = (await context.cookies()).filter(cookie => cookie.name === name)
+  await context.addCookies([{ name, value, url: pier.base, httpOnly: true, sameSite: 'Lax' }])
+  await page.getByText('Not yet sent.').waitFor()
+  expect(await said(page)).toContain('You are signed out; it is sent after you sign in again.')
+  expect(await pier.savedRuns(scenarioId)).toEqual([])
+  await context.addCookies([{ name, value: mine!.value, url: pier.base, httpOnly: true, sameSite: 'Lax' }])
+  await page.getByText(/Saved \d\d:\d\d/).waitFor()
+  expect(await pier.savedRuns(scenarioId)).toMatchObject([{ savedBy: expect.stringContaining('Lead Person') }])
+
+  const second = await context.newPage()
+  await visit(second, `${pier.base}/account`)
+  await second.getByRole('button', { name: 'Sign out', exact: true }).click()
+  await page.waitForURL('**/sign-in**')
+  await leave()
+})
+
 it('finds an unsent run again after the tab was closed, and sends it', async () => {
   const { scenarioId } = await pier.scenario()
   const { context, page, seen, leave } = await pier.seat(`/scenarios/${scenarioId}`, { expected: OFFLINE })

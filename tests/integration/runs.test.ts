@@ -79,9 +79,32 @@ describe('a run', () => {
     expect((await lead.delete(`/api/runs/${saved.runId}`)).status).toBe(204)
     expect([(await list()).includes(saved.runId), (await list(1)).includes(saved.runId), (await lead.get(`/api/runs/${saved.runId}`)).status]).toEqual([false, true, 404])
     expect((await lead.post(`/api/runs/${saved.runId}/restore`)).status).toBe(200)
+    expect((await lead.get<RunDetail>(`/api/runs/${saved.runId}`)).body).toMatchObject({ document: { title: SMALL.title }, scenarioBinned: false })
     const first = (await lead.get<Page<RunRow>>(`/api/benches/${benchId}/runs?limit=1`)).body
     const second = (await lead.get<Page<RunRow>>(`/api/benches/${benchId}/runs?limit=1&cursor=${first.nextCursor}`)).body
     expect(first.rows[0]!.number - second.rows[0]!.number).toBe(1)
+  })
+})
+
+describe('a run whose scenario went to the bin', () => {
+  it('stays readable with what was walked, and says so', async () => {
+    const scenario = await makeScenario(lead, benchId, { title: 'Binned later' })
+    const { body: saved } = await save(scenario, await runBody(SMALL, { seed: 'stays' }))
+    await lead.delete(`/api/scenarios/${scenario.scenarioId}`)
+    const { status, body } = await lead.get<RunDetail>(`/api/runs/${saved.runId}`)
+    expect([status, body.scenarioBinned, body.document.title, body.outcome.digest]).toEqual([200, true, 'Binned later', saved.outcome.digest])
+  })
+})
+
+describe('a page of another account', () => {
+  it('saves nothing in the name of whoever is signed in now', async () => {
+    const before = await runCount(), other = await arrive(world.database.db, world.server.base, 'Someone Else')
+    const body = await runBody(SMALL, { seed: 'whose' })
+    const answer = await lead.post<Problem>(`/api/scenarios/${stirred.scenarioId}/runs`, body, { 'idempotency-key': 'whose', 'x-moorage-person': other.userId })
+    expect([answer.status, answer.body.code]).toEqual([401, 'sign_in_first'])
+    expect(answer.body.detail).toContain('Another account is signed in here now')
+    expect(await runCount()).toBe(before)
+    expect((await lead.post(`/api/scenarios/${stirred.scenarioId}/runs`, body, { 'idempotency-key': 'whose', 'x-moorage-person': lead.userId })).status).toBe(201)
   })
 })
 

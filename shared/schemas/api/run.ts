@@ -1,6 +1,6 @@
 /** Bodies of runs. The browser sends blocks; every figure and interval is made again from them on the server. */
 import { z } from 'zod'
-import { SCENARIO_LIMITS, seedProblem } from '../scenario'
+import { SCENARIO_LIMITS, seedProblem, type Scenario } from '../scenario'
 import type { Outcome } from '../outcome'
 import type { ReplicateBlock } from '../../walk/types'
 
@@ -49,4 +49,10 @@ export interface RunRow {
   verdict: Outcome['agreement']['verdict'], ratio: Outcome['ratio'], audit: RunAudit, mayDelete: boolean
 }
 /** GET /api/runs/:runId · DELETE (bin) · POST /api/runs/:runId/restore · GET /api/runs/:runId/blocks → ReplicateBlock[] */
-export interface RunDetail extends RunRow { benchId: string, outcome: Outcome, durationMs: number, workers: number, replicatesAsked: number }
+export interface RunDetail extends RunRow {
+  benchId: string, outcome: Outcome, durationMs: number, workers: number, replicatesAsked: number
+  /** What was walked: a run stays readable whatever becomes of its scenario. */
+  document: Scenario
+  /** Its scenario lies in the bin, or did for too long. */
+  scenarioBinned: boolean
+}
