@@ -42,7 +42,7 @@ export type MarkEvidence = '.' | ',' | 'both' | 'none' | 'no-number'
 export function markEvidence(cell: string): MarkEvidence {
   if (PLAIN.test(cell)) return 'none'
   // A unit behind the number says nothing of its mark.
-  const bare = cell.replace(/\s*(?:%|[a-zA-Zµμ]+)\s*$/, '')
+  const bare = cell.replace(/\s*(?:%|ms|msec|s|sec|min|[µμu]s|[pn]A|[fp]F|mV)\s*$/, '')
   const read = (decimal: Decimal) => parsePlainNumber(bare, { decimal, settled: true })
   const point = read('.'), comma = read(',')
   if (point.kind === 'ok' && comma.kind === 'ok') return point.value === comma.value ? 'none' : 'both'
@@ -83,5 +83,5 @@ export function readCell(cell: string, decimal: Decimal, settled: boolean, unit:
   if (read.kind === 'ambiguous') return { kind: 'ambiguous' }
   if (read.kind !== 'ok') return { kind: 'refused', sentence: read.sentence }
   const rounding = roundingOf(cell, decimal) * UNITS[read.unit].inBase / UNITS[into].inBase
-  return { kind: 'ok', value: tidied(convert(read.value, unit, into)), rounding, ownUnit: read.unit !== unit }
+  return { kind: 'ok', value: tidied(convert(read.value, unit, into)), rounding, ownUnit: /[%a-z]\s*$/i.test(cell) }
 }

@@ -31,6 +31,13 @@ function looksLikeData(row: FileRow): boolean {
   return numbers >= 2 || (numbers === 1 && filled(row).some(cell => missingSpelling(cell) !== null))
 }
 
+/** A single cell that another separator would split into numbers: a data row of mixed separators, not a remark. */
+const foreignData = ({ cells }: FileRow): boolean => cells.length === 1 && [';', '\t', ','].some((separator) => {
+  const pieces = cells[0]!.split(separator)
+  return pieces.length > 1 && pieces.every(numberLikeOrNothing) && pieces.some(piece => missingSpelling(piece) === null)
+})
+const numberLikeOrNothing = (cell: string) => missingSpelling(cell) !== null || numberLike(cell)
+
 /** Names of columns that are known among the cells of a row without numbers [count]. */
 function namesIn(row: FileRow): number {
   if (numbersIn(row) > 0) return 0
@@ -75,7 +82,7 @@ function kindOf(row: FileRow, i: number, { header, unit, first, headerText, unit
   if (i < first) return 'title'
   const text = folded(row)
   if (text === headerText || text === unitText) return 'again'
-  const holds = numbersIn(row) > 0 || filled(row).some(cell => missingSpelling(cell) !== null)
+  const holds = numbersIn(row) > 0 || foreignData(row) || filled(row).some(cell => missingSpelling(cell) !== null)
   return !holds || commented(row) ? 'remark' : 'data'
 }
 
