@@ -6,7 +6,8 @@ import { PLACE } from './recovery-model'
 
 /** Last steps from a minimum that is already found. */
 const POLISH: LeastSquaresOptions = { damping: 1e-4, iterations: 200, changeTolerance: 1e-15, changeFloor: 0, stepTolerance: 1e-13, confirmations: 2 }
-const SHORT: LeastSquaresOptions = { ...SEARCH, iterations: 12 }
+/** Iterations of a first try. */
+const FIRST_ITERATIONS = 12
 /** How many of the short tries go to the end. */
 const KEPT = 4
 
@@ -45,9 +46,9 @@ export function startOf(design: FitDesign, shape: StartShape): Float64Array {
 }
 
 /** The best of several starts, each tried for a few iterations, the best ones to the end. */
-export function bestOf(problem: LeastSquaresProblem, starts: readonly ArrayLike<number>[], kept = KEPT): LeastSquaresFit {
-  const tries = starts.map(start => fitLeastSquares(problem, start, SHORT)).sort((a, b) => a.chi2 - b.chi2).slice(0, kept)
-  return tries.map(one => one.converged ? one : fitLeastSquares(problem, one.parameters, SEARCH)).reduce((best, one) => one.chi2 < best.chi2 ? one : best)
+export function bestOf(problem: LeastSquaresProblem, starts: readonly ArrayLike<number>[], kept = KEPT, options = SEARCH): LeastSquaresFit {
+  const tries = starts.map(start => fitLeastSquares(problem, start, { ...options, iterations: FIRST_ITERATIONS })).sort((a, b) => a.chi2 - b.chi2).slice(0, kept)
+  return tries.map(one => one.converged ? one : fitLeastSquares(problem, one.parameters, options)).reduce((best, one) => one.chi2 < best.chi2 ? one : best)
 }
 
 export interface FoundFit extends LeastSquaresFit { problem: LeastSquaresProblem }

@@ -1,0 +1,91 @@
+/**
+ * One exponential against two: parametric bootstrap under the one.
+ * The likelihood ratio does not follow χ² here: the smaller model lies on the boundary of the richer, and one time constant has no meaning there (Davies 1977, Biometrika 64:247).
+ */
+import { seedWords, stateOf, Stream } from '../walk/streams'
+import { curveProblem, placesOf } from './curve-problem'
+import { normalDeviates } from './deviates'
+import type { SearchedFit } from './fit'
+import { bestOf, FEW_SHAPES, startOf } from './fit-search'
+import { fitLeastSquares, SEARCH } from './least-squares'
+import { PLACE, PLACES, recoveryAt } from './recovery-model'
+
+export const BOOTSTRAP_RESAMPLES = 999
+export const BOOTSTRAP_SEED = 'one or two'
+/** A statistic is wanted to a few thousandths; valleys of two exponentials under one are long and flat. */
+const COARSE = { ...SEARCH, changeTolerance: 1e-4, iterations: 60 }
+/** Number of the stream that fits draw from; no replicate of a walk has it. */
+const STREAM = 0xFFFFFFFE
+
+export interface BootstrapOptions {
+  resamples?: number
+  seed?: string
+  /** Called now and then with the resamples done; returning false ends early [count]. */
+  progress?: (done: number) => boolean
+}
+
+export interface BootstrapResult {
+  /** χ²₁ − χ²₂, without weights n·ln(RSS₁/RSS₂) [1]. */
+  statistic: number
+  /** (1 + resamples that reach the statistic) / (B + 1). */
+  p: number
+  resamples: number
+  seed: string
+  /** 95 % point of the statistic under one exponential [1]. */
+  critical95: number
+}
+
+const ratioOf = (known: boolean, points: number, one: number, two: number): number =>
+  known ? Math.max(0, one - two) : points * Math.log(Math.max(1, one / Math.max(two, 1e-300)))
+
+/** The one-exponential fit written as two, with both time constants near it: so that two never fit worse. */
+function startsFromOne(two: SearchedFit, one: SearchedFit, x: Float64Array): Float64Array[] {
+  const places = one.design.curves.map((curve) => {
+    const at = new Float64Array(PLACES)
+    placesOf(curve, x, at)
+    return at
+  })
+  return [[0.5, Math.log(1.5)], [0.9, Math.log(4)]].map(([share, apart]) => Float64Array.from(two.design.slots, ({ place, curves }) => {
+    const at = places[curves[0]!]!
+    if (place === PLACE.fastShare) return share!
+    if (place === PLACE.logTauFast) return at[PLACE.logTauFast]! - apart!
+    return place === PLACE.logTauSlow ? at[PLACE.logTauFast]! + apart! : at[place]!
+  }))
+}
+
+/**
+ * p of one exponential against two: new ratios are drawn about the one-exponential curve with the errors of the points (without weights: with the scatter about it), and both models are fitted to each draw.
+ * @param one - search with one exponential; `two` must have the same conditions and options
+ * @param two - search with two exponentials
+ * @param options - resamples, seed, progress
+ * @returns statistic and p; null where progress ended it
+ */
+export function bootstrapOneAgainstTwo(one: SearchedFit, two: SearchedFit, { resamples = BOOTSTRAP_RESAMPLES, seed = BOOTSTRAP_SEED, progress }: BootstrapOptions = {}): BootstrapResult | null {
+  const { curves, weighted } = one.design, known = weighted.weights !== 'none', x = one.found.parameters
+  const points = one.found.residuals.length, dof = points - one.design.slots.length
+  const statistic = ratioOf(known, points, one.found.chi2, two.found.chi2)
+  const drawn = curves.map(curve => ({ ...curve, ratios: Float64Array.from(curve.ratios) }))
+  const problemOne = curveProblem(drawn, one.design.slots), problemTwo = curveProblem(two.design.curves.map((curve, i) => ({ ...curve, ratios: drawn[i]!.ratios })), two.design.slots)
+  const scatter = known ? 1 : Math.sqrt(one.found.chi2 / Math.max(1, dof))
+  const fitted = curves.map((curve) => {
+    const at = new Float64Array(PLACES)
+    placesOf(curve, x, at)
+    return Float64Array.from(curve.timesS, time => recoveryAt(at, time))
+  })
+  const [low, high] = seedWords(seed), stream = new Stream(stateOf(low, high, STREAM)), deviates = new Float64Array(points), found = new Float64Array(resamples)
+  const shapes = FEW_SHAPES.map(shape => startOf(two.design, shape))
+  for (let done = 0; done < resamples; done++) {
+    if (progress && done % 50 === 0 && !progress(done)) return null
+    normalDeviates(stream, deviates)
+    let row = 0
+    drawn.forEach((curve, i) => {
+      for (let k = 0; k < curve.ratios.length; k++) curve.ratios[k] = fitted[i]![k]! + scatter * deviates[row++]! / curve.weights[k]!
+    })
+    const fitOne = fitLeastSquares(problemOne, x)
+    const fitTwo = bestOf(problemTwo, [...startsFromOne(two, one, fitOne.parameters), ...shapes], 2, COARSE)
+    found[done] = ratioOf(known, points, fitOne.chi2, fitTwo.chi2)
+  }
+  const reached = found.reduce((sum, value) => sum + (value >= statistic ? 1 : 0), 0)
+  found.sort()
+  return { statistic, p: (1 + reached) / (resamples + 1), resamples, seed, critical95: found[Math.min(resamples - 1, Math.ceil(0.95 * resamples) - 1)]! }
+}
