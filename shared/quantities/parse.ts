@@ -99,6 +99,20 @@ export function parsePlainNumber(text: string, options: ParseOptions = {}): Read
   return parseQuantity(text, '1', options)
 }
 
+const PLAIN_POINT = /^-?\d{1,15}(?:\.\d{1,15})?$/, PLAIN_COMMA = /^-?\d{1,15}(?:,\d{1,15})?$/
+
+/**
+ * The quick way for millions of plain samples: digits and the declared mark, nothing else. Whatever else a cell holds goes through `parsePlainNumber`.
+ * @param text - a cell without blanks around it
+ * @param decimal - the declared decimal mark
+ * @returns the same value as `parsePlainNumber` [1], or null where the cell is not of this plain form
+ */
+export function plainDecimal(text: string, decimal: '.' | ','): number | null {
+  if (!(decimal === '.' ? PLAIN_POINT : PLAIN_COMMA).test(text)) return null
+  const value = Number(decimal === '.' ? text : text.replace(',', '.'))
+  return value === 0 ? 0 : value
+}
+
 /**
  * What a person probably meant by a probability above 1: `30` is offered as 30 % = 0.30, never silently scaled.
  * @param value - the number as read [1]
