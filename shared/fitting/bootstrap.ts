@@ -6,6 +6,7 @@ import { seedWords, stateOf, Stream } from '../walk/streams'
 import { curveProblem, placesOf } from './curve-problem'
 import { normalDeviates } from './deviates'
 import type { SearchedFit } from './fit'
+import type { FitDesign } from './fit-design'
 import { bestOf, FEW_SHAPES, startOf } from './fit-search'
 import { fitLeastSquares, SEARCH } from './least-squares'
 import { PLACE, PLACES, recoveryAt } from './recovery-model'
@@ -20,7 +21,7 @@ const STREAM = 0xFFFFFFFE
 export interface BootstrapOptions {
   resamples?: number
   seed?: string
-  /** Called now and then with the resamples done; returning false ends early [count]. */
+  /** Called every 50 resamples with those done [count]; returning false ends early. */
   progress?: (done: number) => boolean
 }
 
@@ -38,14 +39,20 @@ export interface BootstrapResult {
 const ratioOf = (known: boolean, points: number, one: number, two: number): number =>
   known ? Math.max(0, one - two) : points * Math.log(Math.max(1, one / Math.max(two, 1e-300)))
 
-/** The one-exponential fit written as two, with both time constants near it: so that two never fit worse. */
-function startsFromOne(two: SearchedFit, one: SearchedFit, x: Float64Array): Float64Array[] {
-  const places = one.design.curves.map((curve) => {
+/**
+ * The one-exponential fit written as two, with both time constants near it: so that two never fit worse.
+ * @param two - design with two exponentials
+ * @param one - design with one, of the same conditions
+ * @param x - its fit [1, ln s]
+ * @returns starts for the two [1, ln s]
+ */
+export function startsFromOne(two: FitDesign, one: FitDesign, x: Float64Array): Float64Array[] {
+  const places = one.curves.map((curve) => {
     const at = new Float64Array(PLACES)
     placesOf(curve, x, at)
     return at
   })
-  return [[0.5, Math.log(1.5)], [0.9, Math.log(4)]].map(([share, apart]) => Float64Array.from(two.design.slots, ({ place, curves }) => {
+  return [[0.5, Math.log(1.5)], [0.9, Math.log(4)]].map(([share, apart]) => Float64Array.from(two.slots, ({ place, curves }) => {
     const at = places[curves[0]!]!
     if (place === PLACE.fastShare) return share!
     if (place === PLACE.logTauFast) return at[PLACE.logTauFast]! - apart!
@@ -82,7 +89,7 @@ export function bootstrapOneAgainstTwo(one: SearchedFit, two: SearchedFit, { res
       for (let k = 0; k < curve.ratios.length; k++) curve.ratios[k] = fitted[i]![k]! + scatter * deviates[row++]! / curve.weights[k]!
     })
     const fitOne = fitLeastSquares(problemOne, x)
-    const fitTwo = bestOf(problemTwo, [...startsFromOne(two, one, fitOne.parameters), ...shapes], 2, COARSE)
+    const fitTwo = bestOf(problemTwo, [...startsFromOne(two.design, one.design, fitOne.parameters), ...shapes], 2, COARSE)
     found[done] = ratioOf(known, points, fitOne.chi2, fitTwo.chi2)
   }
   const reached = found.reduce((sum, value) => sum + (value >= statistic ? 1 : 0), 0)

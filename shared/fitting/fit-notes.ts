@@ -48,7 +48,7 @@ function fitNotes({ weighted, conditions }: FitDesign, { parameters, chi2, dof, 
   if (bound.length > 0) notes.push({ code: 'at-bound', message: `${bound.map(nameOf).join(', ')} ${bound.length === 1 ? 'stands' : 'stand'} on a bound and ${bound.length === 1 ? 'is' : 'are'} no result: the points do not hold ${bound.length === 1 ? 'it' : 'them'}.` })
   if (dof === 0) notes.push({ code: 'no-freedom', message: 'There are as many free parameters as points: the curve must pass through all of them, and nothing can speak against it.' })
   const p = dof > 0 && weighted.weights !== 'none' ? chiSquaredAbove(chi2, dof) : 1
-  if (p < POOR_FIT) notes.push({ code: 'poor-fit', message: `The curve misses the points by more than their errors explain (χ² ${Number(chi2.toPrecision(4))} with ${dof} degrees of freedom, p ${p < 1e-6 ? 'below 0.000001' : Number(p.toPrecision(2))}). Intervals are widened by √(χ²/dof).` })
+  if (p < POOR_FIT) notes.push({ code: 'poor-fit', message: `The curve misses the points by more than their errors explain (χ² ${Number(chi2.toPrecision(4))} with ${dof} degrees of freedom, p ${p < 1e-6 ? 'below 0.000001' : Number(p.toPrecision(2))}). Intervals are widened for it.` })
   if (weighted.weights === 'none' && criterion === null) notes.push({ code: 'no-criterion', message: 'There are too few points for a criterion of an unweighted fit (AICc needs more than k + 1 points, the error variance counted in k).' })
   if (conditions.some(one => one.cells.length > 0)) notes.push({ code: 'same-cells', message: 'The points are means of the same cells and taken as independent here; the fits of single cells show what that misses.' })
   return notes

@@ -39,7 +39,7 @@ export interface RecoveryFit {
   /** Weighted sum of squared residuals [1]; without weights the plain one. */
   chi2: number
   dof: number
-  /** s: what χ² is divided by in the criterion and in intervals [1]; 1 without weights. */
+  /** s: what χ² is divided by in the criterion [1]; 1 without weights. Intervals use the fit's own max(1, χ²/dof). */
   scale: number
   /** χ²/s + 2k; without weights AICc, and null where it is not defined [1]. */
   criterion: number | null
@@ -118,13 +118,14 @@ export interface SearchedFit { design: FitDesign, found: FoundFit }
  * Lays out and searches, without errors and intervals: what resampling and comparisons start from.
  * @param conditions - fitted together
  * @param options - model, weights, what is free, shared or held
+ * @param more - further starts for this design
  * @returns design and minimum, or why there is none
  */
-export function searchConditions(conditions: readonly ConditionData[], options: FitOptions): SearchedFit | FitRefusal {
+export function searchConditions(conditions: readonly ConditionData[], options: FitOptions, more: (design: FitDesign) => Float64Array[] = () => []): SearchedFit | FitRefusal {
   const design = fitDesign(conditions, options)
   if ('refused' in design) return design
   const refused = refusalOf(design)
-  return refused ?? { design, found: searchFit(design, startsOfParts(conditions, options, design)) }
+  return refused ?? { design, found: searchFit(design, [...startsOfParts(conditions, options, design), ...more(design)]) }
 }
 
 /** Starts from the fit of each condition alone: every shared parameter at the mean of its parts. */
@@ -153,8 +154,8 @@ function startsOfParts(conditions: readonly ConditionData[], options: FitOptions
  */
 export function finishFit({ design, found: first }: SearchedFit, scale?: number): RecoveryFit {
   const { weighted, slots, model, held } = design, points = first.residuals.length, dof = points - slots.length
-  const known = weighted.weights !== 'none', scaleOf = (chi2: number) => known ? scale ?? excessScatter(chi2, dof) : 1
-  const estimated = estimate(design, first, dof, scaleOf), { found } = estimated, s = scaleOf(found.chi2)
+  const known = weighted.weights !== 'none', scaleOf = (chi2: number) => known ? excessScatter(chi2, dof) : 1
+  const estimated = estimate(design, first, dof, scaleOf), { found } = estimated, s = scale ?? scaleOf(found.chi2)
   const parameters = parametersOf(design, estimated)
   const criterion = known ? knownErrorCriterion(found.chi2, s, slots.length) : found.chi2 > 0 ? scatterCriteria(points, found.chi2, slots.length + 1).aicc : null
   return {
