@@ -30,7 +30,13 @@ export interface Curve {
 /** Time constants are fitted as logarithms. */
 export const isLogarithmic = ({ place }: Slot): boolean => place === PLACE.logTauFast || place === PLACE.logTauSlow
 
-/** A curve from its points. */
+/**
+ * A curve from its points.
+ * @param points - sorted by interval
+ * @param slots - slot of each of the five places, −1 where it is held [1]
+ * @param held - value of each place [1, ln s]
+ * @returns the curve, its points independent
+ */
 export function curveOf(points: readonly FitPoint[], slots: readonly number[], held: readonly number[]): Curve {
   return {
     timesS: Float64Array.from(points, point => point.timeS), ratios: Float64Array.from(points, point => point.ratio),

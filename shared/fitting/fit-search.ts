@@ -45,7 +45,14 @@ export function startOf(design: FitDesign, shape: StartShape): Float64Array {
   })
 }
 
-/** The best of several starts, each tried for a few iterations, the best ones to the end. */
+/**
+ * The best of several starts, each tried for a few iterations, the best ones to the end.
+ * @param problem - with bounds
+ * @param starts - free parameters of each [1, ln s]
+ * @param kept - how many go to the end [1]
+ * @param options - of the engine
+ * @returns the fit with the lowest χ²
+ */
 export function bestOf(problem: LeastSquaresProblem, starts: readonly ArrayLike<number>[], kept = KEPT, options = SEARCH): LeastSquaresFit {
   const tries = starts.map(start => fitLeastSquares(problem, start, { ...options, iterations: FIRST_ITERATIONS })).sort((a, b) => a.chi2 - b.chi2).slice(0, kept)
   return tries.map(one => one.converged ? one : fitLeastSquares(problem, one.parameters, options)).reduce((best, one) => one.chi2 < best.chi2 ? one : best)
@@ -65,7 +72,13 @@ export function searchFit(design: FitDesign, more: readonly ArrayLike<number>[] 
   return { ...polish(problem, inOrder(design, best.parameters), best.converged), problem }
 }
 
-/** To the last digits; never above where it started. */
+/**
+ * Goes to the last digits; never ends above where it started.
+ * @param problem - with bounds
+ * @param at - a minimum, nearly [1, ln s]
+ * @param converged - whether the search had settled there
+ * @returns the fit
+ */
 export function polish(problem: LeastSquaresProblem, at: Float64Array, converged: boolean): LeastSquaresFit {
   const fit = fitLeastSquares(problem, at, POLISH)
   return { ...fit, converged: fit.converged || converged }

@@ -16,6 +16,7 @@ export interface FitPoint {
 export interface FitNote { code: string, message: string }
 /** Why there is no fit. */
 export interface FitRefusal { refused: FitNote }
+/** A refusal from its code and its sentence. */
 export const refusal = (code: string, message: string): FitRefusal => ({ refused: { code, message } })
 
 export interface ErrorOptions {

@@ -53,7 +53,7 @@ function endOf(profiled: Profiled, j: number, firstStep: number): { end: number 
 /**
  * Profile interval of one free parameter.
  * @param problem - with bounds
- * @param best - free parameters at the minimum, in the problem's own units
+ * @param best - free parameters at the minimum, [unit of the parameter]
  * @param chi2 - minimum of χ² [1]
  * @param j - which parameter [1]
  * @param rise - how far χ² may stand above its minimum, 3.84·s for 95 % [1]
