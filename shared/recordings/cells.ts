@@ -1,5 +1,5 @@
 /** One cell of a table: nothing, a number, a date that a spreadsheet made of a number, or something else. */
-import { UNITS, convert, parsePlainNumber, parseQuantity, type UnitSymbol } from '../units'
+import { UNITS, convert, parsePlainNumber, parseQuantity, plainDecimal, type UnitSymbol } from '../units'
 import type { Decimal } from './reading'
 
 /** Spellings that stand for no value (common practice, no source). */
@@ -7,7 +7,8 @@ const MISSING = new Set(['', 'na', 'n/a', 'n.a.', 'nan', 'null', '-', '--', '---
   '#n/a', '#nv', '#div/0!', '#value!', '#wert!', '#ref!', '#bezug!', '#num!', '#zahl!', '#null!', '#name?'])
 const MONTHS = ['jan', 'feb', 'mar|mär|mrz', 'apr', 'may|mai', 'jun', 'jul', 'aug', 'sep', 'oct|okt', 'nov', 'dec|dez']
 const MONTH = MONTHS.join('|')
-const PLAIN = /^[+-]?\d{1,15}$/
+/** The plain forms of nearly all cells, judged without the parser: no mark, or one with digits on both sides. */
+const PLAIN = /^[+-]?(\d{1,15})(?:([.,])(\d{1,15}))?$/
 
 /** The spelling of a missing value, as it is counted; null where the cell holds something. */
 export function missingSpelling(cell: string): string | null {
@@ -40,7 +41,8 @@ export type MarkEvidence = '.' | ',' | 'both' | 'none' | 'no-number'
 
 /** Which decimal marks a cell allows. */
 export function markEvidence(cell: string): MarkEvidence {
-  if (PLAIN.test(cell)) return 'none'
+  const plain = PLAIN.exec(cell)
+  if (plain) return plain[2] === undefined ? 'none' : plain[3]!.length === 3 && /^[1-9]\d{0,2}$/.test(plain[1]!) ? 'both' : plain[2] as Decimal
   // A unit behind the number says nothing of its mark.
   const bare = cell.replace(/\s*(?:%|ms|msec|s|sec|min|[µμu]s|[pn]A|[fp]F|mV)\s*$/, '')
   const read = (decimal: Decimal) => parsePlainNumber(bare, { decimal, settled: true })
@@ -75,6 +77,8 @@ function roundingOf(cell: string, decimal: Decimal): number {
  * @returns the value in `into`, or why there is none; never NaN, and 0 only where a zero stands
  */
 export function readCell(cell: string, decimal: Decimal, settled: boolean, unit: UnitSymbol, into: UnitSymbol = unit): CellRead {
+  const plain = plainDecimal(cell, decimal)
+  if (plain !== null) return { kind: 'ok', value: tidied(convert(plain, unit, into)), rounding: roundingOf(cell, decimal) * UNITS[unit].inBase / UNITS[into].inBase, ownUnit: false }
   const spelling = missingSpelling(cell)
   if (spelling !== null) return { kind: 'missing', spelling }
   const date = spreadsheetDate(cell)

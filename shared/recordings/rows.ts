@@ -43,10 +43,17 @@ function countFeeds(text: string, from: number, to: number): number {
 export function splitRows(text: string, separator: Separator, firstLine = 1): SplitText {
   const tidy = withFeeds(text), body = tidy.endsWith('\n') ? tidy.slice(0, -1) : tidy
   const lines = firstLine + countFeeds(body, 0, body.length)
-  const rows: FileRow[] = []
+  // The library sees no row in an empty text; a lone break still ends one.
+  const rows: FileRow[] = body === '' && tidy !== '' ? [{ line: firstLine, cells: [''] }] : []
+  const plain = { delimiter: separator, newline: '\n' as const, skipEmptyLines: false }
+  if (!body.includes('"')) {
+    // Without quotes each line is a row: no need to follow the library row by row.
+    const cut = Papa.parse<string[]>(body, plain).data
+    return { rows: rows.length > 0 ? rows : cut.map((cells, i) => ({ line: firstLine + i, cells })), lines, unclosed: null }
+  }
   let line = firstLine, unclosed: SplitText['unclosed'] = null
   Papa.parse<string[]>(body, {
-    delimiter: separator, newline: '\n', skipEmptyLines: false,
+    ...plain,
     step({ data, errors }) {
       if (errors.some(error => error.code === 'MissingQuotes')) {
         const opened = line + breaksBeforeOpening(data)

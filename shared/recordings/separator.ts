@@ -6,7 +6,7 @@ import { splitRows, type FileRow } from './rows'
 export const SEPARATORS: Separator[] = [';', '\t', ',']
 export const SEPARATOR_NAMES: Record<Separator, string> = { ',': 'comma', ';': 'semicolon', '\t': 'tab' }
 /** Rows that are looked at [count], and how much of the text they may span [characters]. */
-const LOOKED_AT = 200, HEAD = 60_000
+const LOOKED_AT = 200, HEAD = 12_000
 
 /** The most frequent count of cells among rows that hold something, the larger at a tie [count]. */
 export function usualWidth(rows: FileRow[]): number {

@@ -40,6 +40,13 @@ describe('a number in a cell', () => {
       expect(decimals === 0 ? ['none'] : [mark, 'both']).toContain(markEvidence(written(whole, decimals, mark, '', '-')))
     }), { numRuns: 1000 })
   })
+  it('speaks for the marks that the parser itself takes', () => {
+    fc.assert(fc.property(fc.string({ unit: fc.constantFrom(...'0123456789.,-'), maxLength: 9 }), (text) => {
+      const point = parsePlainNumber(text, { decimal: '.', settled: true }), comma = parsePlainNumber(text, { decimal: ',', settled: true })
+      const both = point.kind === 'ok' && comma.kind === 'ok' ? (point.value === comma.value ? 'none' : 'both') : null
+      expect(markEvidence(text)).toBe(both ?? (point.kind === 'ok' ? '.' : comma.kind === 'ok' ? ',' : 'no-number'))
+    }), { numRuns: 3000 })
+  })
   it('is never NaN, and 0 only where a zero stands', () => {
     fc.assert(fc.property(fc.oneof(fc.string(), fc.string({ unit: fc.constantFrom(...'0123456789.,-+eE\'% xINFnaN\u2212\u202F#/') })), decimalMark, fc.boolean(), (text, mark, settled) => {
       const read = readCell(text, mark, settled, '1')

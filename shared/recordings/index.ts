@@ -1,0 +1,10 @@
+/** Reading of recordings: what the upload page, the interface and the command lines call. */
+export { parseChoices, ReadingChoicesSchema, type ReadingChoices } from './choices'
+export { MEANING_NAMES } from './columns'
+export { meansOfCells, UNNAMED } from './conditions'
+export { decodeBytes, sizeProblem, type Decoded } from './decode'
+export { mappingOf, shapeOf } from './mapping'
+export { readBytes, readingRecord, readRecording } from './read'
+export type * from './reading'
+export { FileStream, PIECE_BYTES, type Progress } from './stream'
+export { UNTOUCHED, type CellPoint, type ConditionData, type SummaryPoint } from './types'
