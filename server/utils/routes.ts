@@ -6,6 +6,7 @@ import type { z } from 'zod'
 import type { Action } from '../../shared/permissions'
 import { MemberEditSchema, BenchEditSchema } from '../../shared/schemas/api/bench'
 import { RegisterSchema, SignInSchema } from '../../shared/schemas/api/account'
+import { MappingQuerySchema, PointsAsideSchema, RecordingCreateSchema, RecordingEditSchema, RecordingListSchema, UploadQuerySchema } from '../../shared/schemas/api/recording'
 import { RunListSchema, RunSaveSchema } from '../../shared/schemas/api/run'
 import { ScenarioCreateSchema, ScenarioDuplicateSchema, ScenarioEditSchema, ScenarioListSchema, ScenarioTagsSchema } from '../../shared/schemas/api/scenario'
 
@@ -34,6 +35,7 @@ const row = (method: RouteMethod, path: string, access: RouteRow['access'], summ
 const BENCH = '/api/benches/:benchId'
 const SCENARIO = '/api/scenarios/:scenarioId'
 const RUN = '/api/runs/:runId'
+const RECORDING = '/api/recordings/:recordingId'
 
 export const ROUTES: RouteRow[] = [
   row('GET', '/api/health', 'public', 'Ready only when the database answers.', { answer: 'Health' }),
@@ -58,6 +60,11 @@ export const ROUTES: RouteRow[] = [
   row('POST', `${BENCH}/scenarios`, 'scenario.create', 'Makes a scenario from a document; import is the same call.', { status: 201, body: ScenarioCreateSchema, answer: 'ScenarioDetail' }),
   row('GET', `${BENCH}/runs`, 'run.read', 'Runs of a bench, newest first.', { query: RunListSchema, answer: 'Page<RunRow>' }),
 
+  row('POST', `${BENCH}/uploads`, 'recording.create', 'Keeps a file byte for byte, sent as application/octet-stream; the same bytes under one name are kept once.', { status: 201, query: UploadQuerySchema, answer: 'Upload' }),
+  row('GET', `${BENCH}/recordings`, 'recording.read', 'Recordings of a bench, last change first.', { query: RecordingListSchema, answer: 'Page<RecordingRow>' }),
+  row('POST', `${BENCH}/recordings`, 'recording.create', 'Makes recordings from a kept file; the server reads it by the choices given.', { status: 201, body: RecordingCreateSchema, answer: 'RecordingDetail[]' }),
+  row('GET', `${BENCH}/mappings`, 'recording.read', 'How a file of this shape was read last.', { query: MappingQuerySchema, answer: 'KeptMapping' }),
+
   row('GET', SCENARIO, 'scenario.read', 'A scenario with its newest document; its revision is the ETag.', { answer: 'ScenarioDetail' }),
   row('PUT', SCENARIO, 'scenario.edit', 'Saves an edit as a new revision; an unchanged document makes none.', { body: ScenarioEditSchema, ifMatch: true, answer: 'ScenarioDetail' }),
   row('PATCH', SCENARIO, 'scenario.edit', 'Sets the tags; makes no revision.', { body: ScenarioTagsSchema, answer: 'ScenarioDetail' }),
@@ -73,6 +80,13 @@ export const ROUTES: RouteRow[] = [
   row('GET', RUN, 'run.read', 'A run with its outcome.', { answer: 'RunDetail' }),
   row('DELETE', RUN, 'run.delete', 'Puts a run into the bin.', { status: 204 }),
   row('POST', `${RUN}/restore`, 'run.delete', 'Takes a run out of the bin.', { answer: 'RunDetail' }),
+  row('GET', RECORDING, 'recording.read', 'A recording with its points; its revision is the ETag.', { answer: 'RecordingDetail' }),
+  row('PUT', RECORDING, 'recording.edit', 'Names, details, notes and tags.', { body: RecordingEditSchema, ifMatch: true, answer: 'RecordingDetail' }),
+  row('PATCH', RECORDING, 'recording.edit', 'Sets points aside with a reason, or takes them back.', { body: PointsAsideSchema, ifMatch: true, answer: 'RecordingDetail' }),
+  row('DELETE', RECORDING, 'recording.delete', 'Puts a recording into the bin.', { status: 204 }),
+  row('POST', `${RECORDING}/restore`, 'recording.delete', 'Takes a recording out of the bin.', { answer: 'RecordingDetail' }),
+  row('GET', `${RECORDING}/original`, 'recording.read', 'The file byte for byte as it came.', { answer: 'Binary' }),
+
   row('GET', `${RUN}/blocks`, 'run.read', 'The integers behind the outcome, block by block.', { answer: 'ReplicateBlock[]' }),
 ]
 

@@ -45,7 +45,7 @@ export const RecordingListSchema = z.strictObject({
   search: z.string().max(200).default(''), tag: z.string().max(40).default(''),
   bin: z.enum(['0', '1']).default('0'), cursor: z.string().max(500).default(''), limit: z.coerce.number().int().min(1).max(100).default(25),
 })
-/** GET /api/benches/:benchId/mappings?shape=… → KeptMapping | 404 */
+/** GET /api/benches/:benchId/mappings?shape=… → { mapping: KeptMapping | null } */
 export const MappingQuerySchema = z.strictObject({ shape: z.string().regex(/^[0-9a-f]{64}$/, 'A shape is 64 hexadecimal digits.') })
 export interface KeptMapping { choices: Record<string, unknown>, savedBy: string, savedAt: string }
 

@@ -1,0 +1,24 @@
+/** Holds the bytes of one file and reads them by a person's choices; runs in a worker of its own. */
+import type { FieldProblem } from '#shared/schemas/problem'
+import type { ReadingChoices } from '#shared/recordings/choices'
+import { readBytes } from '#shared/recordings/read'
+import type { Reading } from '#shared/recordings/reading'
+
+/** Lines that a preview shows; the others are read all the same [count]. */
+export const SHOWN_LINES = 300
+export type FileReading = { ok: true, reading: Reading, /** Lines that are not shown [count]. */ more: number } | { ok: false, problem: FieldProblem }
+
+export class FileReadingDesk {
+  private bytes = new Uint8Array()
+
+  open(bytes: Uint8Array): void {
+    this.bytes = bytes
+  }
+
+  read(choices: ReadingChoices): FileReading {
+    const read = readBytes(this.bytes, choices)
+    if (!read.ok) return read
+    const { lines } = read.reading
+    return { ok: true, reading: { ...read.reading, lines: lines.slice(0, SHOWN_LINES) }, more: Math.max(0, lines.length - SHOWN_LINES) }
+  }
+}
