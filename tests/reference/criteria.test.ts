@@ -18,6 +18,9 @@ describe('tails', () => {
     expect(statistic).toBeCloseTo(4.4, 12)
     expectRelative([chiSquaredAbove(statistic, 3)], [0.22138539], 3e-8)
   })
+  it('T-29 exact 95 per cent interval of an exponential mean, n = 20, mean 1: 2n/χ²₂ₙ, 0.67406217 to 1.6371275', () => {
+    expectRelative([40 / chiSquaredCritical(0.025, 40), 40 / chiSquaredCritical(0.975, 40)], [0.67406217, 1.6371275], 3e-8)
+  })
   it('two degrees of freedom are exactly exponential, far into the tail', () => {
     expectRelative([0.1, 1, 5, 50, 600].map(x => chiSquaredAbove(x, 2)), [0.1, 1, 5, 50, 600].map(x => Math.exp(-x / 2)), 1e-12)
     expect(chiSquaredAbove(0, 3)).toBe(1)
