@@ -3,6 +3,17 @@ import { z } from 'zod'
 import { fieldProblems, type FieldProblem } from '../schemas/problem'
 import { MEANINGS } from './reading'
 
+const stimulus = z.strictObject({ startS: z.number().min(0), endS: z.number().min(0) })
+/** Windows of a trace; each left out has its usual length. */
+const TraceChoicesSchema = z.strictObject({
+  stimuli: z.tuple([stimulus, stimulus]).optional(),
+  baselineMs: z.number().min(1).max(60_000).optional(),
+  skipMs: z.number().min(0).max(60_000).optional(),
+  measureMs: z.number().min(1).max(60_000).optional(),
+  subtractSlope: z.boolean().optional(),
+  /** Name of the cell that the trace is of. */
+  cell: z.string().min(1).max(120).optional(),
+})
 const line = z.number().int().min(1)
 
 export const ReadingChoicesSchema = z.strictObject({
@@ -35,6 +46,7 @@ export const ReadingChoicesSchema = z.strictObject({
   condition: z.string().min(1).max(120).optional(),
   protocol: z.string().min(1).max(120).optional(),
   manipulation: z.string().min(1).max(120).optional(),
+  trace: TraceChoicesSchema.optional(),
 })
 export type ReadingChoices = z.output<typeof ReadingChoicesSchema>
 

@@ -54,13 +54,14 @@ function numbersOf(data: FileRow[], column: ColumnRead | undefined, unit: 's' | 
 /** The unit of the interval: by name, unit line or the cells themselves; else asked, since a factor of 1,000 is at stake. */
 export function findTimeUnit(data: FileRow[], column: ColumnRead | undefined, byName: boolean, decimal: Decimal, settled: boolean, chosen?: Marks['timeUnit']): Found & { timeUnit: Marks['timeUnit'] } {
   const { values, own, from, to } = numbersOf(data, column, 's', decimal, settled)
+  const noun = column?.meaning === 'time' ? 'time' : 'interval'
   const named = (['ms', 's', 'min'] as const).find(unit => unit === column?.unit), largest = Math.max(0, ...values)
   const likely = largest >= 500 ? 'ms' : largest < 120 && values.some(value => !Number.isInteger(value)) ? 's' : null
   const timeUnit = chosen ?? named ?? likely ?? 'ms', range = values.length === 0 ? '' : ` It runs from ${from} to ${to}.`
   const ask = !chosen && !named && values.length > 0
   const sentence = chosen ? 'Chosen.' : named ? `The ${byName ? 'name' : 'unit line'} says ${named}.${range}` : values.length === 0 && own > 0 ? 'Every interval has its own unit.' : `Nothing says the unit.${range}`
-  const guess: Guess = { id: 'time', label: 'Interval', shown: timeUnit, sure: chosen ? 'chosen' : ask ? 'asked' : named && !byName ? 'guess' : 'certain', sentence, options: TIME_OPTIONS }
-  const question: Question | null = ask ? { id: 'time', must: true, lines: [], sentence: `Nothing says the unit of the interval, which runs from ${from} to ${to}; is it ms or s?`, options: TIME_OPTIONS, suggested: likely === null ? null : likely === 'ms' ? 0 : 1 } : null
+  const guess: Guess = { id: 'time', label: noun === 'time' ? 'Time' : 'Interval', shown: timeUnit, sure: chosen ? 'chosen' : ask ? 'asked' : named && !byName ? 'guess' : 'certain', sentence, options: TIME_OPTIONS }
+  const question: Question | null = ask ? { id: 'time', must: true, lines: [], sentence: `Nothing says the unit of the ${noun}, which runs from ${from} to ${to}; is it ms or s?`, options: TIME_OPTIONS, suggested: likely === null ? null : likely === 'ms' ? 0 : 1 } : null
   return { timeUnit, guess, question }
 }
 

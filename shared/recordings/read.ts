@@ -9,15 +9,19 @@ import { frameOf, type Frame } from './frame'
 import { readLines } from './lines'
 import { shapeOf } from './mapping'
 import { findRepeats, unsortedWarning } from './repeats'
-import type { Encoding, Guess, LineRead, Question, Reading } from './reading'
+import type { Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
 import { MOST_CELLS, lineEndsOf, splitRows, type SplitText } from './rows'
 import { findSeparator } from './separator'
+import { readTrace } from './trace-reading'
+import type { Trace } from './trace-samples'
 import { Tally, questionsOf, warningsOf } from './tally'
 
 /** Lines of a trace that the preview shows [count]. */
 const TRACE_LINES = 60
 /** Rows of a trace from which its frame is settled [count]. */
 const FRAME_ROWS = 2000
+/** Text from which it is told whether a file is a trace [characters]. */
+const HEAD_CHARACTERS = 200_000
 const ENCODING_NAMES: Record<Encoding, string> = { 'utf-8': 'UTF-8', 'utf-16le': 'UTF-16, little end first', 'utf-16be': 'UTF-16, big end first', 'windows-1252': 'Windows-1252' }
 const ENCODING_OPTIONS = Object.entries(ENCODING_NAMES).map(([encoding, label]) => ({ label, choices: { encoding } }))
 
@@ -52,7 +56,34 @@ function sentenceOf(kind: Reading['kind'], points: number, lines: LineRead[], fi
 
 function emptyReading(kind: Reading['kind'], split: SplitText, frame: Frame): Omit<Reading, 'guesses' | 'questions' | 'problems'> {
   const lines = split.rows.slice(0, TRACE_LINES).map(({ line, cells }, i): LineRead => ({ line, cells, kind: frame.layout.kinds[i] === 'data' ? 'point' : frame.layout.kinds[i] as LineRead['kind'], remark: '', kept: null }))
-  return { kind, fileLines: split.lines, columns: frame.columns, lines, warnings: [], missing: {}, setAside: [], conditions: [], counts: [], sentence: '', shape: shapeOf(frame.columns), ready: false }
+  return { kind, fileLines: split.lines, columns: frame.columns, lines, warnings: [], missing: {}, setAside: [], conditions: [], trace: null, counts: [], sentence: '', shape: shapeOf(frame.columns), ready: false }
+}
+
+/** Text, frame and rows: of a large trace only the first rows, of all else every one. */
+function split(text: string, separator: Separator, choices: ReadingChoices): { split: SplitText, frame: Frame } {
+  const cut = text.length > HEAD_CHARACTERS ? text.lastIndexOf('\n', HEAD_CHARACTERS) + 1 : 0
+  const head = splitRows(cut > 0 ? text.slice(0, cut) : text, separator), frame = frameOf(head.rows.slice(0, FRAME_ROWS), separator, choices)
+  if (frame.kind === 'trace' || (cut === 0 && head.rows.length <= FRAME_ROWS)) return { split: head, frame }
+  const whole = cut > 0 ? splitRows(text, separator) : head
+  return { split: whole, frame: frameOf(whole.rows, separator, choices) }
+}
+
+/**
+ * Reads the text of a file, and gives the samples of a trace beside the reading.
+ * @param text - the whole text
+ * @param choices - what a person chose; empty at first
+ * @param decoded - how the bytes became this text, where there were bytes
+ * @returns the reading, and the trace to draw [s, fF, mV]; null where the file is a table
+ */
+export function readWithTrace(text: string, choices: ReadingChoices = {}, decoded?: Decoded): { reading: Reading, trace: Trace | null } {
+  const { separator, guess: separatorGuess } = findSeparator(text, choices.separator), { split: rows, frame } = split(text, separator, choices)
+  const encoding = decoded ? encodingGuess(decoded) : { guesses: [], questions: [] }
+  const ends: Guess = { id: 'line-ends', label: 'Line ends', shown: lineEndsOf(text), sure: 'certain', sentence: 'As they stand in the file.', options: [] }
+  const asked: Question[] = separatorGuess.sure === 'asked' ? [{ id: 'separator', must: true, lines: [], sentence: `${separatorGuess.sentence} Which is meant?`, options: separatorGuess.options, suggested: null }] : []
+  const problems = refusals(rows, frame), questions = [...encoding.questions, ...asked, ...frame.questions]
+  const blank: Reading = { ...emptyReading(frame.kind, rows, frame), guesses: [...encoding.guesses, separatorGuess, ends, ...frame.guesses], questions, problems, sentence: problems[0]?.message ?? '' }
+  if (problems.length > 0) return { reading: blank, trace: null }
+  return frame.kind === 'trace' ? readTrace(text, frame, separator, choices, blank) : { reading: readTable(rows, frame, separator, choices, blank), trace: null }
 }
 
 /**
@@ -63,21 +94,10 @@ function emptyReading(kind: Reading['kind'], split: SplitText, frame: Frame): Om
  * @returns the reading; `ready` says whether it can be kept as it stands
  */
 export function readRecording(text: string, choices: ReadingChoices = {}, decoded?: Decoded): Reading {
-  const { separator, guess: separatorGuess } = findSeparator(text, choices.separator), split = splitRows(text, separator)
-  let frame = frameOf(split.rows.slice(0, FRAME_ROWS), separator, choices)
-  const trace = frame.kind === 'trace'
-  if (!trace && split.rows.length > FRAME_ROWS) frame = frameOf(split.rows, separator, choices)
-  const encoding = decoded ? encodingGuess(decoded) : { guesses: [], questions: [] }
-  const ends: Guess = { id: 'line-ends', label: 'Line ends', shown: lineEndsOf(text), sure: 'certain', sentence: 'As they stand in the file.', options: [] }
-  const guesses = [...encoding.guesses, separatorGuess, ends, ...frame.guesses], problems = refusals(split, frame)
-  const asked: Question[] = separatorGuess.sure === 'asked' ? [{ id: 'separator', must: true, lines: [], sentence: `${separatorGuess.sentence} Which is meant?`, options: separatorGuess.options, suggested: null }] : []
-  const questions = [...encoding.questions, ...asked, ...frame.questions]
-  const blank = emptyReading(frame.kind, split, frame)
-  if (trace || problems.length > 0) return { ...blank, guesses, questions, problems, ready: trace && problems.length === 0 && !questions.some(one => one.must), sentence: problems[0]?.message ?? `A trace of ${split.lines} lines.` }
-  return readTable(split, frame, separator, choices, { ...blank, guesses, questions, problems })
+  return readWithTrace(text, choices, decoded).reading
 }
 
-function readTable(split: SplitText, frame: Frame, separator: Parameters<typeof readLines>[4], choices: ReadingChoices, blank: Reading): Reading {
+function readTable(split: SplitText, frame: Frame, separator: Separator, choices: ReadingChoices, blank: Reading): Reading {
   const tally = new Tally(), kind = frame.kind === 'cells' ? 'cells' as const : 'summary' as const
   const { lines, kept } = readLines(split.rows, frame, { columns: frame.byMeaning, marks: frame.marks, choices, kind, tally }, choices, separator)
   const named = { protocol: frame.byMeaning.protocol !== undefined, manipulation: frame.byMeaning.manipulation !== undefined }
@@ -98,9 +118,9 @@ function readTable(split: SplitText, frame: Frame, separator: Parameters<typeof 
  * @param choices - what a person chose
  * @returns the reading, or why the bytes cannot be read at all
  */
-export function readBytes(bytes: Uint8Array, choices: ReadingChoices = {}): { ok: true, reading: Reading, text: string } | { ok: false, problem: FieldProblem } {
+export function readBytes(bytes: Uint8Array, choices: ReadingChoices = {}): { ok: true, reading: Reading, trace: Trace | null } | { ok: false, problem: FieldProblem } {
   const outcome = decodeBytes(bytes, choices.encoding)
-  return outcome.ok ? { ok: true, reading: readRecording(outcome.decoded.text, choices, outcome.decoded), text: outcome.decoded.text } : outcome
+  return outcome.ok ? { ok: true, ...readWithTrace(outcome.decoded.text, choices, outcome.decoded) } : outcome
 }
 
 /**

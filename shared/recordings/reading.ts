@@ -1,6 +1,9 @@
 /** How a file was read: what was found, what was guessed, what must be asked. Plain JSON throughout. */
 import type { FieldProblem } from '../schemas/problem'
+import type { FoundStimuli } from './stimuli'
+import type { ChoiceEffect, TraceMeasure, TraceSettings } from './trace'
 import type { ConditionData } from './types'
+import type { StepWindows } from './windows'
 
 export type Encoding = 'utf-8' | 'utf-16le' | 'utf-16be' | 'windows-1252'
 export type Separator = ',' | ';' | '\t'
@@ -76,6 +79,20 @@ export interface LineRead {
 }
 export interface ConditionCount { condition: string, points: number, cells: number, rows: number, empty: number }
 
+/** What a trace gives; its samples stay apart, since they are no JSON. */
+export interface TraceReport {
+  samples: number
+  sampleS: number
+  fromS: number
+  toS: number
+  found: FoundStimuli
+  /** Null while two stimuli are neither found nor typed. */
+  settings: TraceSettings | null
+  windows: StepWindows[]
+  measure: TraceMeasure | null
+  effects: ChoiceEffect[]
+}
+
 export interface Reading {
   kind: 'summary' | 'cells' | 'trace'
   /** Lines of the file [count]. */
@@ -92,6 +109,8 @@ export interface Reading {
   missing: Record<string, number>
   setAside: { line: number, reason: string }[]
   conditions: ConditionData[]
+  /** Of a trace only. */
+  trace: TraceReport | null
   counts: ConditionCount[]
   /** “11 points read; 7 of 19 lines set aside, each with its reason.” */
   sentence: string
