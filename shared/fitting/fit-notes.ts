@@ -38,6 +38,12 @@ export function refusalOf({ curves, slots, model, conditions }: FitDesign): FitR
 
 interface Told { parameters: readonly FitParameter[], chi2: number, dof: number, converged: boolean, criterion: number | null }
 
+/** Notes that keep a fit from being shown as a result, or two exponentials from being claimed. */
+const DOUBTFUL = new Set(['not-converged', 'at-bound', 'few-intervals', 'slow-unsampled', 'tau-outside', 'not-separable', 'first-point-only'])
+
+/** Whether the values may stand as a result: settled, off their bounds, within the intervals, and separable where there are two. */
+export const isResolved = (warnings: readonly FitNote[]): boolean => !warnings.some(one => DOUBTFUL.has(one.code))
+
 const secondsOf = (value: number): string => `${Number(value.toPrecision(3))} s`
 const nameOf = ({ name, group }: FitParameter): string => group === null ? name : `${name} (${group})`
 

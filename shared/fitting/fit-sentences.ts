@@ -22,13 +22,14 @@ export function fitParameterText({ name, unit, value, low, high, atBound, group 
 }
 
 /** One line for the fit, one per parameter. */
-export function fitText({ model, points, weights, chi2, dof, criterion, parameters, pooledSd }: RecoveryFit): string[] {
+export function fitText({ model, points, weights, chi2, dof, criterion, parameters, pooledSd, resolved }: RecoveryFit): string[] {
   const sum = weights === 'none' ? `residual sum of squares ${formatNumber(chi2, { significant: 4 })}` : `χ² ${formatNumber(chi2, { significant: 4 })}`
   const sd = pooledSd === null ? '' : ` (${formatNumber(pooledSd)})`
   const measure = criterion === null ? '' : `, ${weights === 'none' ? 'AICc' : 'criterion'} ${formatNumber(criterion, { significant: 4 })}`
   return [
     `${model === 'one' ? 'One exponential' : 'Two exponentials'}, ${points} points ${BY_WEIGHTS[weights]}${sd}: ${sum} with ${dof} ${dof === 1 ? 'degree' : 'degrees'} of freedom${measure}.`,
     ...parameters.map(one => `  ${fitParameterText(one)}`),
+    ...(resolved ? [] : [`  ${model === 'one' ? 'These values are no result' : 'Two exponentials are not claimed from these points'}; the warnings say why.`]),
   ]
 }
 

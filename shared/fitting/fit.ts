@@ -4,7 +4,7 @@ import type { ConditionData } from '../recordings/types'
 import { excessScatter, knownErrorCriterion, scatterCriteria } from './criteria'
 import { isLogarithmic, placesOf } from './curve-problem'
 import { fitDesign, type FitDesign, type FitOptions } from './fit-design'
-import { notesOf, refusalOf } from './fit-notes'
+import { isResolved, notesOf, refusalOf } from './fit-notes'
 import { inOrder, polish, searchFit, type FoundFit } from './fit-search'
 import { covarianceOf } from './least-squares'
 import type { FitNote, FitRefusal, Weights } from './point-errors'
@@ -44,6 +44,8 @@ export interface RecoveryFit {
   /** χ²/s + 2k; without weights AICc, and null where it is not defined [1]. */
   criterion: number | null
   converged: boolean
+  /** False where a warning keeps the values from being a result, or two exponentials from being claimed. */
+  resolved: boolean
   warnings: FitNote[]
   /** Parameters × parameters [1]; null where a parameter has no error. */
   correlations: (number | null)[][]
@@ -158,9 +160,10 @@ export function finishFit({ design, found: first }: SearchedFit, scale?: number)
   const estimated = estimate(design, first, dof, scaleOf), { found } = estimated, s = scale ?? scaleOf(found.chi2)
   const parameters = parametersOf(design, estimated)
   const criterion = known ? knownErrorCriterion(found.chi2, s, slots.length) : found.chi2 > 0 ? scatterCriteria(points, found.chi2, slots.length + 1).aicc : null
+  const warnings = notesOf(design, { parameters, chi2: found.chi2, dof, converged: found.converged, criterion })
   return {
     points, model, weights: weighted.weights, parameters, held, chi2: found.chi2, dof, scale: s, criterion, converged: found.converged,
-    warnings: notesOf(design, { parameters, chi2: found.chi2, dof, converged: found.converged, criterion }), correlations: estimated.correlations,
+    resolved: isResolved(warnings), warnings, correlations: estimated.correlations,
     residuals: residualsOf(design, found.parameters), pooledSd: weighted.pooledSd,
   }
 }

@@ -153,7 +153,9 @@ describe('warnings', () => {
   it('two exponentials of a curve that has one: not separable', () => {
     const codes = Array.from({ length: 5 }, (_, i) => codesOf(fitted(made(ONE, 0.01, streamOf(`single ${i}`)), { model: 'two' })))
     for (const one of codes) expect(one.includes('not-separable') || one.includes('at-bound')).toBe(true)
+    expect(fitted(made(ONE, 0.01, streamOf('single 0')), { model: 'two' }).resolved).toBe(false)
     expect(codesOf(fitted(made(TWO, 0.01), { model: 'two' }))).toEqual(['one-curve'])
+    expect(fitted(made(TWO, 0.01), { model: 'two' }).resolved).toBe(true)
   })
   it('no interval beyond the slow τ, and a τ outside the intervals', () => {
     expect(codesOf(fitted(made(TWO, 0.002, undefined, {}, TIMES_S.slice(0, 8)), { model: 'two' }))).toContain('slow-unsampled')
