@@ -9,7 +9,7 @@ export const SHOWN_LINES = 300
 export type FileReading = { ok: true, reading: Reading, /** Lines that are not shown [count]. */ more: number } | { ok: false, problem: FieldProblem }
 
 export class FileReadingDesk {
-  private bytes = new Uint8Array()
+  private bytes: Uint8Array = new Uint8Array()
 
   open(bytes: Uint8Array): void {
     this.bytes = bytes

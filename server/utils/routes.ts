@@ -3,6 +3,7 @@
  * are made from this table; a handler without a row, or with another access than its row says, fails the tests.
  */
 import type { z } from 'zod'
+import { FitSettingsSchema } from '../../shared/fitting/kept-fit'
 import type { Action } from '../../shared/permissions'
 import { MemberEditSchema, BenchEditSchema } from '../../shared/schemas/api/bench'
 import { RegisterSchema, SignInSchema } from '../../shared/schemas/api/account'
@@ -85,6 +86,8 @@ export const ROUTES: RouteRow[] = [
   row('PATCH', RECORDING, 'recording.edit', 'Sets points aside with a reason, or takes them back.', { body: PointsAsideSchema, ifMatch: true, answer: 'RecordingDetail' }),
   row('DELETE', RECORDING, 'recording.delete', 'Puts a recording into the bin.', { status: 204 }),
   row('POST', `${RECORDING}/restore`, 'recording.delete', 'Takes a recording out of the bin.', { answer: 'RecordingDetail' }),
+  row('GET', `${RECORDING}/fits`, 'recording.read', 'Kept fits, newest first.', { answer: 'KeptFit[]' }),
+  row('POST', `${RECORDING}/fits`, 'recording.edit', 'Fits one and two exponentials and keeps what was found.', { status: 201, body: FitSettingsSchema, answer: 'KeptFit' }),
   row('GET', `${RECORDING}/original`, 'recording.read', 'The file byte for byte as it came.', { answer: 'Binary' }),
 
   row('GET', `${RUN}/blocks`, 'run.read', 'The integers behind the outcome, block by block.', { answer: 'ReplicateBlock[]' }),
