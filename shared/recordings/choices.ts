@@ -36,6 +36,8 @@ export const ReadingChoicesSchema = z.strictObject({
   zeroError: z.enum(['missing', 'smallest']).optional(),
   /** Two rows of one interval: two points, or one weighted by n. */
   duplicates: z.enum(['keep', 'merge']).optional(),
+  /** Run-down of the first response: left as measured, or taken out where it is clear. */
+  runDown: z.enum(['as-measured', 'corrected']).optional(),
   /** Rows with too few or too many cells. */
   ragged: z.enum(['take', 'leave']).optional(),
   /** Names that stand only in the first of several rows hold for the rows below. */

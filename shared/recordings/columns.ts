@@ -10,7 +10,7 @@ export interface ColumnsRead { columns: ColumnRead[], questions: Question[], kin
 
 export const MEANING_NAMES: Record<Meaning, string> = {
   'interval': 'interval', 'ratio': 'ratio (second over first)', 'sd': 'SD', 'sem': 'SEM', 'half-width': 'half-width of the 95 % interval', 'lower-limit': 'lower 95 % limit', 'upper-limit': 'upper 95 % limit',
-  'n': 'n', 'cell': 'name of the cell', 'condition': 'condition', 'protocol': 'protocol', 'manipulation': 'manipulation', 'first': 'first response', 'second': 'second response',
+  'n': 'n', 'cell': 'name of the cell', 'condition': 'condition', 'protocol': 'protocol', 'manipulation': 'manipulation', 'first': 'first response', 'second': 'second response', 'aside': 'reason to stay out of fits',
   'time': 'time of the trace', 'capacitance': 'capacitance', 'command': 'command voltage', 'ignore': 'left out',
 }
 const one = (index: number, meaning: Meaning) => ({ label: MEANING_NAMES[meaning], choices: { columns: { [index]: meaning } } })

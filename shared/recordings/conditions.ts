@@ -1,5 +1,6 @@
 /** Lines to conditions: means of cells, order by interval, two rows of one interval. */
 import { UNTOUCHED, type CellPoint, type ConditionData, type SummaryPoint } from './types'
+import { correctRunDown } from './rundown'
 import type { ReadingChoices } from './choices'
 import type { ConditionCount, KeptValues } from './reading'
 
@@ -44,8 +45,8 @@ function merged(points: SummaryPoint[]): SummaryPoint {
 
 function mergeEqual(points: SummaryPoint[]): SummaryPoint[] {
   const groups = new Map<number, SummaryPoint[]>()
-  for (const point of points) groups.set(point.intervalMs, [...groups.get(point.intervalMs) ?? [], point])
-  return [...groups.values()].map(group => group.length === 1 ? group[0]! : merged(group))
+  for (const point of points) if (point.aside === null) groups.set(point.intervalMs, [...groups.get(point.intervalMs) ?? [], point])
+  return byInterval([...points.filter(point => point.aside !== null), ...[...groups.values()].map(group => group.length === 1 ? group[0]! : merged(group))])
 }
 
 /** Errors of 0 that stand for “the smallest other”: 0 is left only where no other is known, and then nothing is known. */
@@ -97,10 +98,11 @@ export function makeConditions(lines: NamedLine[], kind: 'summary' | 'cells', ch
   const groups = grouped(lines, choices, named)
   const conditions = groups.map(({ lines: own, ...names }): ConditionData => {
     if (kind === 'cells') {
-      const cells = own.map(({ line, kept }): CellPoint => ({ cell: kept.cell!, intervalMs: kept.intervalMs, ratio: kept.ratio, first: kept.first, aside: null, line }))
-      return { ...names, points: meansOfCells(cells), cells }
+      const cells = own.map(({ line, kept }): CellPoint => ({ cell: kept.cell!, intervalMs: kept.intervalMs, ratio: kept.ratio, first: kept.first, aside: kept.aside, line }))
+      const settled = choices.runDown === 'corrected' ? correctRunDown(cells).cells : cells
+      return { ...names, points: meansOfCells(settled), cells: settled }
     }
-    const points = byInterval(own.map(({ line, kept }): SummaryPoint => ({ intervalMs: kept.intervalMs, ratio: kept.ratio!, sd: kept.sd, sem: kept.sem, n: kept.n, aside: null, line })))
+    const points = byInterval(own.map(({ line, kept }): SummaryPoint => ({ intervalMs: kept.intervalMs, ratio: kept.ratio!, sd: kept.sd, sem: kept.sem, n: kept.n, aside: kept.aside, line })))
     const lifted = choices.zeroError === 'smallest' ? liftZeros(points) : points
     return { ...names, points: choices.duplicates === 'merge' ? mergeEqual(lifted) : lifted, cells: [] }
   })

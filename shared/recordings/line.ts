@@ -104,7 +104,7 @@ class LineReader {
 
   keep(condition: string): KeptValues {
     const intervalMs = this.interval(), first = this.number('first'), ratio = this.ratio(first)
-    const base = { condition, intervalMs, ratio, first: first?.value ?? null }
+    const base = { condition, intervalMs, ratio, first: first?.value ?? null, aside: this.text('aside') || null }
     if (this.context.kind === 'cells') {
       const cell = this.text('cell')
       return { ...base, cell: cell === '' ? refuse('The name of the cell is missing.') : cell, sd: null, sem: null, n: null }

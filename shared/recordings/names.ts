@@ -55,6 +55,7 @@ const NAMES: [RegExp, Meaning | 'bar'][] = [
   [words('condition', 'conditions', 'group', 'treatment', 'drug', 'bedingung', 'gruppe'), 'condition'],
   [words('protocol', 'stimulus', 'stim', 'stim protocol', 'protokoll', 'first stimulus'), 'protocol'],
   [words('manipulation', 'perturbation', 'intervention'), 'manipulation'],
+  [words('set aside', 'aside', 'reason set aside'), 'aside'],
   [/^(?:cm|capacitance|membrane capacitance|c m|delta ?cm trace|kapazität)$/, 'capacitance'],
   [/^(?:v ?cmd|v ?command|command|voltage|vm|v m|v hold|kommando)$/, 'command'],
   [/^(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?2 ?[/:÷] ?(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?1$/, 'ratio'],

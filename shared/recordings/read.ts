@@ -10,6 +10,7 @@ import { readLines } from './lines'
 import { shapeOf } from './mapping'
 import { findRepeats, unsortedWarning } from './repeats'
 import type { Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
+import { runDownWarning } from './rundown'
 import { MOST_CELLS, lineEndsOf, splitRows, type SplitText } from './rows'
 import { findSeparator } from './separator'
 import { readTrace } from './trace-reading'
@@ -103,10 +104,11 @@ function readTable(split: SplitText, frame: Frame, separator: Separator, choices
   const named = { protocol: frame.byMeaning.protocol !== undefined, manipulation: frame.byMeaning.manipulation !== undefined }
   const { conditions, counts } = makeConditions(kept, kind, choices, named)
   const repeats = findRepeats(kept, kind, choices), questions = [...blank.questions, ...questionsOf(tally), ...repeats.questions]
+  const rundown = choices.runDown === 'corrected' ? [] : conditions.flatMap(({ condition, cells }) => runDownWarning(condition, cells))
   const lost = counts.filter(count => count.empty > 0).map(count => ({ id: 'empty', lines: [], sentence: `${count.condition}: ${count.empty} of ${count.rows} empty. They count as lost, never as 0.` }))
   const problems = kept.length === 0 && !questions.some(one => one.must) ? [{ path: 'file', message: 'No line could be kept; each says why.' }] : []
   return {
-    ...blank, lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost],
+    ...blank, lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost, ...rundown],
     setAside: lines.filter(isAside).map(({ line, remark }) => ({ line, reason: remark.replace(/^set aside: /, '').slice(0, 300) })),
     sentence: sentenceOf(kind, kept.length, lines, split.lines), ready: problems.length === 0 && kept.length > 0 && !questions.some(one => one.must),
   }
@@ -132,5 +134,5 @@ export function readBytes(bytes: Uint8Array, choices: ReadingChoices = {}): { ok
 export function readingRecord(reading: Reading, choices: ReadingChoices): RecordingReading {
   const columns = reading.columns.filter(column => column.filled > 0).map(column => `Column ${column.letter}${column.name ? `, “${column.name}”` : ''}: ${MEANING_NAMES[column.meaning]}. ${column.sentence}`)
   const empty = reading.kind === 'cells' ? reading.counts.reduce((sum, count) => sum + count.empty, 0) : reading.lines.filter(line => line.kind === 'lost').length
-  return { choices: { ...choices }, decisions: [...reading.guesses.map(guess => `${guess.label}: ${guess.shown}. ${guess.sentence}`), ...columns], setAside: reading.setAside, empty }
+  return { choices: { ...choices }, decisions: [...choices.runDown === 'corrected' ? ['Run-down: taken out of the ratios of every cell whose first response changes clearly.'] : [], ...reading.guesses.map(guess => `${guess.label}: ${guess.shown}. ${guess.sentence}`), ...columns], setAside: reading.setAside, empty }
 }

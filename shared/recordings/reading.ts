@@ -12,7 +12,7 @@ export type Decimal = '.' | ','
 export type Sure = 'certain' | 'guess' | 'asked' | 'chosen'
 
 export const MEANINGS = [
-  'interval', 'ratio', 'sd', 'sem', 'half-width', 'lower-limit', 'upper-limit', 'n', 'cell', 'condition', 'protocol', 'manipulation', 'first', 'second',
+  'interval', 'ratio', 'sd', 'sem', 'half-width', 'lower-limit', 'upper-limit', 'n', 'cell', 'condition', 'protocol', 'manipulation', 'first', 'second', 'aside',
   'time', 'capacitance', 'command', 'ignore',
 ] as const
 export type Meaning = typeof MEANINGS[number]
@@ -67,6 +67,8 @@ export interface KeptValues {
   sem: number | null
   n: number | null
   first: number | null
+  /** The file itself says why it stays out of fits; null where it counts. */
+  aside: string | null
 }
 export interface LineRead {
   line: number
