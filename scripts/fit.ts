@@ -1,4 +1,4 @@
-/** `npm run -s fit -- FILE.csv --model one|two|both [--weights sem|pooled|none] [--free-plateau] [--condition NAME] [--json]`: fits a recording. */
+/** `npm run -s fit -- FILE.csv --model one|two|both [--weights sem|pooled|none|cells] [--free-plateau] [--condition NAME] [--json]`: fits a recording. */
 import { BOOTSTRAP_RESAMPLES, BOOTSTRAP_SEED } from '../shared/fitting/bootstrap'
 import { fitCells, type CellsFit } from '../shared/fitting/cell-fits'
 import { fitCondition, type RecoveryFit } from '../shared/fitting/fit'
@@ -10,7 +10,7 @@ import { badInput, EXIT, runCommand } from './support/exits'
 import { seedOption, wholeOption } from './support/options'
 import { readConditions, readRecordingOptions, READING_USAGE } from './support/recording-file'
 
-const USAGE = `Usage: npm run -s fit -- FILE.csv --model one|two|both [--weights sem|pooled|none] [--free-plateau] [--condition NAME] [--seed S] [--resamples N] ${READING_USAGE} [--json]`
+const USAGE = `Usage: npm run -s fit -- FILE.csv --model one|two|both [--weights sem|pooled|none|cells] [--free-plateau] [--condition NAME] [--seed S] [--resamples N] ${READING_USAGE} [--json]`
 const MODELS = ['one', 'two', 'both'] as const
 const RESAMPLES = [99, 99_999] as const
 

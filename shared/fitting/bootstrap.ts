@@ -3,7 +3,7 @@
  * The likelihood ratio does not follow χ² here: the smaller model lies on the boundary of the richer, and one time constant has no meaning there (Davies 1977, Biometrika 64:247).
  */
 import { seedWords, stateOf, Stream } from '../walk/streams'
-import { curveProblem, placesOf } from './curve-problem'
+import { curveProblem, placesOf, type Curve } from './curve-problem'
 import { normalDeviates } from './deviates'
 import type { SearchedFit } from './fit'
 import type { FitDesign } from './fit-design'
@@ -60,6 +60,16 @@ export function startsFromOne(two: FitDesign, one: FitDesign, x: Float64Array): 
   }))
 }
 
+/** New ratios about a curve: independent errors, or errors that the whitening factor would make independent again (W·e = z, solved from the first row down). */
+function draw({ ratios, weights, whitening }: Curve, fitted: Float64Array, deviates: Float64Array, scatter: number): void {
+  const n = ratios.length
+  for (let i = 0; i < n; i++) {
+    let error = scatter * deviates[i]!
+    for (let k = 0; whitening && k < i; k++) error -= whitening[i * n + k]! * (ratios[k]! - fitted[k]!)
+    ratios[i] = fitted[i]! + error / (whitening ? whitening[i * n + i]! : weights[i]!)
+  }
+}
+
 /**
  * p of one exponential against two: new ratios are drawn about the one-exponential curve with the errors of the points (without weights: with the scatter about it), and both models are fitted to each draw.
  * @param one - search with one exponential; `two` must have the same conditions and options
@@ -86,7 +96,7 @@ export function bootstrapOneAgainstTwo(one: SearchedFit, two: SearchedFit, { res
     normalDeviates(stream, deviates)
     let row = 0
     drawn.forEach((curve, i) => {
-      for (let k = 0; k < curve.ratios.length; k++) curve.ratios[k] = fitted[i]![k]! + scatter * deviates[row++]! / curve.weights[k]!
+      draw(curve, fitted[i]!, deviates.subarray(row, row += curve.ratios.length), scatter)
     })
     const fitOne = fitLeastSquares(problemOne, x)
     const fitTwo = bestOf(problemTwo, [...startsFromOne(two.design, one.design, fitOne.parameters), ...shapes], 2, COARSE)

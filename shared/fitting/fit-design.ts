@@ -90,7 +90,8 @@ export function fitDesign(conditions: readonly ConditionData[], options: FitOpti
     const slotAt = (place: number) => slots.findIndex(slot => slot.place === place && slot.curves.includes(curve))
     const places = [0, 1, 2, 3, 4].map(slotAt)
     if (depletion === 'complete') places[PLACE.depletion] = places[PLACE.plateau]!
-    return curveOf(points, places, held)
+    const made = curveOf(points, places, held), factor = weighted.cells?.factors[curve]
+    return factor ? { ...made, weights: made.weights.fill(1), whitening: factor } : made
   })
   const told: FitDesign['held'] = []
   if (!freePlateau) told.push({ name: 'plateau', value: 1 })

@@ -56,7 +56,7 @@ function fitNotes({ weighted, conditions }: FitDesign, { parameters, chi2, dof, 
   const p = dof > 0 && weighted.weights !== 'none' ? chiSquaredAbove(chi2, dof) : 1
   if (p < POOR_FIT) notes.push({ code: 'poor-fit', message: `The curve misses the points by more than their errors explain (χ² ${Number(chi2.toPrecision(4))} with ${dof} degrees of freedom, p ${p < 1e-6 ? 'below 0.000001' : Number(p.toPrecision(2))}). Intervals are widened for it.` })
   if (weighted.weights === 'none' && criterion === null) notes.push({ code: 'no-criterion', message: 'There are too few points for a criterion of an unweighted fit (AICc needs more than k + 1 points, the error variance counted in k).' })
-  if (conditions.some(one => one.cells.length > 0)) notes.push({ code: 'same-cells', message: 'The points are means of the same cells and taken as independent here; the fits of single cells show what that misses.' })
+  if (weighted.cells === null && conditions.some(one => one.cells.length > 0)) notes.push({ code: 'same-cells', message: 'The points are means of the same cells and taken as independent here; weights by cells, or fits of single cells, show what that misses.' })
   return notes
 }
 

@@ -5,7 +5,7 @@ import type { BothFits } from './fit-both'
 
 const NO_BREAK = '\u00A0'
 const NAMES = { depletion: 'depletion', fastShare: 'fast share', tauS: 'τ', tauFastS: 'fast τ', tauSlowS: 'slow τ', plateau: 'plateau' } as const
-const BY_WEIGHTS = { sem: 'weighted by the SEM of each point', pooled: 'weighted by √n over one pooled SD', none: 'without weights' } as const
+const BY_WEIGHTS = { sem: 'weighted by the SEM of each point', pooled: 'weighted by √n over one pooled SD', none: 'without weights', cells: 'weighted by the covariance of their cells' } as const
 
 function intervalText(low: number | null, high: number | null, unit: string): string {
   if (low !== null && high !== null) return `95${NO_BREAK}% interval ${formatInterval(low, high)}${unit}`

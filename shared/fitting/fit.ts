@@ -1,6 +1,7 @@
 /** Fits of one or two exponentials to one condition, or to several that share parameters: values, errors, intervals, criterion, warnings. */
 import { studentQuantile975 } from '../walk/normal'
 import type { ConditionData } from '../recordings/types'
+import type { CellVariance } from './cell-covariance'
 import { excessScatter, knownErrorCriterion, scatterCriteria } from './criteria'
 import { isLogarithmic, placesOf } from './curve-problem'
 import { fitDesign, type FitDesign, type FitOptions } from './fit-design'
@@ -52,13 +53,16 @@ export interface RecoveryFit {
   residuals: FitResidual[]
   /** SD between cells that pooled weights were made of [1]. */
   pooledSd: number | null
+  /** With weights by cells: SD of a cell's point about its own curve [1], SD between cells of the logarithm of all rates and of the depletion [1], and Σ(cells − 1). */
+  betweenCells: CellVariance | null
 }
 
 /** 95 % point of χ² with one degree of freedom. */
 const RISE_95 = 3.841458820694124
 
-/** How far χ² may rise: 3.84·s with known errors; without weights by Student's t on the scatter. */
-function riseOf({ weighted: { weights } }: FitDesign, chi2: number, dof: number, scale: number): number | null {
+/** How far χ² may rise: 3.84·s with known errors; by Student's t at Σ(cells − 1) with cells, and on the scatter without weights. */
+function riseOf({ weighted: { weights, cells } }: FitDesign, chi2: number, dof: number, scale: number): number | null {
+  if (cells) return studentQuantile975(cells.variance.dof) ** 2 * scale
   if (weights !== 'none') return RISE_95 * scale
   return dof > 0 && chi2 > 0 ? chi2 / dof * studentQuantile975(dof) ** 2 : null
 }
@@ -164,7 +168,7 @@ export function finishFit({ design, found: first }: SearchedFit, scale?: number)
   return {
     points, model, weights: weighted.weights, parameters, held, chi2: found.chi2, dof, scale: s, criterion, converged: found.converged,
     resolved: isResolved(warnings), warnings, correlations: estimated.correlations,
-    residuals: residualsOf(design, found.parameters), pooledSd: weighted.pooledSd,
+    residuals: residualsOf(design, found.parameters), pooledSd: weighted.pooledSd, betweenCells: weighted.cells?.variance ?? null,
   }
 }
 
