@@ -55,10 +55,16 @@ export function cellDirections(timesS: Float64Array, ratio: Float64Array, error:
   return { timesS, byRate: Float64Array.from(timesS, (_, i) => by[4 * i + 1]! + by[4 * i + 2]!), byDepletion: Float64Array.from(timesS, (_, i) => by[4 * i + 3]!) }
 }
 
-interface CellRow { at: number[], values: number[] }
+/** Ratios of one cell, by places among the times of the means. */
+export interface CellRow { at: number[], values: number[] }
 
-/** Ratios of each cell at the times of the means; lost ones and ones set aside are left out, repeats are averaged. */
-function cellRows(cells: readonly CellPoint[], timesS: Float64Array): CellRow[] {
+/**
+ * Ratios of each cell at the times of the means; lost ones and ones set aside are left out, repeats are averaged.
+ * @param cells - of one condition
+ * @param timesS - of its means [s]
+ * @returns one row per cell, in order of appearance
+ */
+export function cellRows(cells: readonly CellPoint[], timesS: Float64Array): CellRow[] {
   const rows = new Map<string, Map<number, number[]>>(), places = new Map(Array.from(timesS, (time, i) => [Math.round(time * 1e6), i]))
   for (const { cell, intervalMs, ratio, aside } of cells) {
     const place = places.get(Math.round(intervalMs * 1e3))

@@ -71,6 +71,9 @@ export const EXPLANATION_NAMES: Record<Explanation, string> = {
   'two-step': 'two steps', 'spread': 'a spread of rates',
 }
 
+/** Names that take a verb in the plural. */
+export const SPOKEN_AS_MANY: ReadonlySet<Explanation> = new Set(['site-kinds', 'two-step'])
+
 /** The last interval that guesses and bounds are made for [s]. */
 export const REFERENCE_LAST_S = 51.2
 

@@ -90,7 +90,8 @@ export class JointProblem implements LeastSquaresProblem {
     return this.local
   }
 
-  evaluate(at: Float64Array, residuals: Float64Array, jacobian: Float64Array | null): boolean {
+  /** An own property: profiles spread the problem with other bounds. */
+  readonly evaluate = (at: Float64Array, residuals: Float64Array, jacobian: Float64Array | null): boolean => {
     jacobian?.fill(0)
     let row = 0
     for (let c = 0; c < this.conditions.length; c++) {

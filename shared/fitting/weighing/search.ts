@@ -125,8 +125,8 @@ export class ExplanationSearch {
   }
 
   /** The start with the changed parameter put where a scan finds χ² least. */
-  private scanned(problem: JointProblem, start: Float64Array, place: number): Float64Array {
-    const { slots, lower, upper } = problem.layout, scratch = new Float64Array(problem.points), changed = slots.flatMap((slot, i) => slot.place === place && slot.manipulation !== null ? [i] : [])
+  private scanned(problem: JointProblem, start: Float64Array, manipulation: string, place: number): Float64Array {
+    const { slots, lower, upper } = problem.layout, scratch = new Float64Array(problem.points), changed = slots.flatMap((slot, i) => slot.place === place && slot.manipulation === manipulation ? [i] : [])
     const parameter = this.model.parameters[place], tried = Float64Array.from(start)
     let best = Float64Array.from(start), least = Infinity
     for (const value of parameter?.log ? FACTORS : parameter && parameter.upper > 1 ? VARIANCES : SHARES) {
@@ -144,8 +144,20 @@ export class ExplanationSearch {
     const conditions = [...this.untouched, ...this.data.conditions.filter(one => one.manipulation === manipulation)], changes: Changes = new Map([[manipulation, place]])
     const problem = this.problem(conditions, changes), warm = this.warmStarts().filter(values => [...values.keys()].some(key => key.startsWith(`${place}|${manipulation}|`)))
     const fixed = this.settings.warm ? [] : this.guesses()
-    const scans = [...minima.map(found => this.valuesOf(found)), ...fixed].map(values => this.scanned(problem, this.startFor(problem.layout, values), place))
+    const scans = [...minima.map(found => this.valuesOf(found)), ...fixed].map(values => this.scanned(problem, this.startFor(problem.layout, values), manipulation, place))
     return this.bestOf(problem, changes, [...warm.map(values => this.startFor(problem.layout, values)), ...scans]).map(one => this.canonical(one, conditions))
+  }
+
+  /** A candidate fitted again with one manipulation more, whatever that changes: the best of all changes. */
+  extended(found: Found, manipulation: string): Found | null {
+    const { conditions } = this.data
+    if (!conditions.some(one => one.manipulation === manipulation)) return this.bestOf(this.problem(conditions, found.changes), found.changes, [this.startFor(this.problem(conditions, found.changes).layout, this.valuesOf(found))])[0] ?? null
+    const fits = this.placesOf(manipulation).flatMap((place) => {
+      const changes: Changes = new Map([...found.changes, [manipulation, place]]), problem = this.problem(conditions, changes)
+      const starts = [this.valuesOf(found), ...this.guesses().slice(0, 2)].map(values => this.scanned(problem, this.startFor(problem.layout, values), manipulation, place))
+      return this.bestOf(problem, changes, starts)
+    })
+    return fits.sort((a, b) => a.chi2 - b.chi2)[0] ?? null
   }
 
   /** All manipulations together, started from the single fits. */
@@ -167,6 +179,12 @@ function sameMinimum(a: Found, b: Found): boolean {
 /** Every choice of one entry from each list. */
 function product<T>(lists: readonly (readonly T[])[]): T[][] {
   return lists.reduce<T[][]>((all, list) => all.flatMap(head => list.map(item => [...head, item])), [[]])
+}
+
+/** Fits a candidate again from where it stands. */
+export function refit(found: Found, data: WeighData, typed: TypedDepletion): Found {
+  const { parameters, chi2 } = fitLeastSquares(new JointProblem(found.model, data.conditions, found.layout, typed), found.parameters, SEARCH)
+  return { ...found, parameters, chi2 }
 }
 
 class Best {
@@ -219,7 +237,7 @@ export function* searchExplanation(model: ExplanationModel, data: WeighData, set
   return all.sorted().filter(found => found.chi2 <= limit)
 }
 
-/** Searches all explanations that have fewer parameters than there are points. */
+/** Searches several explanations one after another; yields the one at work. */
 export function* searchAll(data: WeighData, settings: SearchSettings, explanations: readonly Explanation[]): Generator<Explanation, Map<Explanation, Found[]>> {
   const found = new Map<Explanation, Found[]>()
   for (const explanation of explanations) {
