@@ -62,3 +62,14 @@ export function parseChoices(input: unknown): { ok: true, choices: ReadingChoice
   if (parsed.success) return { ok: true, choices: parsed.data }
   return { ok: false, problems: fieldProblems(parsed.error.issues).map(one => ({ ...one, path: one.path ? `choices.${one.path}` : 'choices' })) }
 }
+
+/**
+ * Choices with an answer added: columns, lines left out and trace windows are added to, all else is replaced.
+ * @param choices - as they were
+ * @param answer - the choices of an option
+ * @returns new choices
+ */
+export function withAnswer(choices: ReadingChoices, answer: ReadingChoices): ReadingChoices {
+  const joined = <K extends 'columns' | 'leftOut' | 'trace'>(key: K) => choices[key] || answer[key] ? { [key]: { ...choices[key], ...answer[key] } } : {}
+  return { ...choices, ...answer, ...joined('columns'), ...joined('leftOut'), ...joined('trace') }
+}

@@ -87,6 +87,21 @@ function askTwice(columns: ColumnRead[]): Question[] {
   })
 }
 
+/** Rows wider than their header: names may stand one column too far left, or decimal commas were split. */
+function askWidth(columns: ColumnRead[], named: number | null): Question[] {
+  const beyond = named === null ? [] : columns.filter(column => column.index >= named && column.filled > 0 && column.sure !== 'chosen')
+  if (named === null || beyond.length === 0) return []
+  const leave = Object.fromEntries(beyond.map(column => [column.index, 'ignore'])), names = columns.slice(0, named)
+  const shifted = Object.fromEntries([[0, 'ignore'], ...names.map(column => [column.index + 1, column.meaning])])
+  const unit = names.find(column => column.meaning === 'interval')?.unit ?? ''
+  const moved = { columns: shifted, ...['ms', 's', 'min'].includes(unit) ? { timeUnit: unit } : {} }
+  return [{
+    id: 'header-width', must: true, lines: [], suggested: null,
+    sentence: `The header names ${named} columns, yet the rows have ${beyond.at(-1)!.index + 1} cells. Where commas stand both between cells and in numbers, export with semicolons instead.`,
+    options: [{ label: 'leave the columns without a name out', choices: { columns: leave } }, ...beyond.length === 1 ? [{ label: 'the names belong one column to the right', choices: moved }] : []],
+  }]
+}
+
 /**
  * The meaning of every column.
  * @param rows - rows of the file (the first few hundred are enough)
@@ -104,7 +119,7 @@ export function readColumns(rows: FileRow[], layout: Layout, choices: ReadingCho
     return chosen ? { ...guess, bar: false, meaning: chosen, sure: 'chosen' as const, sentence: 'Chosen.' } : guess
   })
   settleTime(columns)
-  const questions = [...askMeanings(columns, bodies, layout.header === null), ...askTwice(columns)]
+  const questions = [...askMeanings(columns, bodies, layout.header === null), ...askTwice(columns), ...askWidth(columns, layout.named)]
   const has = (meaning: Meaning) => columns.some(column => column.meaning === meaning && column.filled > 0)
   const kind = has('time') && has('capacitance') ? 'trace' : has('cell') ? 'cells' : 'summary'
   return { columns: columns.map(({ bar: _, ...column }) => column), questions, kind }

@@ -1,5 +1,5 @@
 /** Reading of recordings: what the upload page, the interface and the command lines call. */
-export { parseChoices, ReadingChoicesSchema, type ReadingChoices } from './choices'
+export { parseChoices, ReadingChoicesSchema, withAnswer, type ReadingChoices } from './choices'
 export { MEANING_NAMES } from './columns'
 export { meansOfCells, UNNAMED } from './conditions'
 export { decodeBytes, sizeProblem, type Decoded } from './decode'

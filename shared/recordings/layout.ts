@@ -15,6 +15,8 @@ export interface Layout {
   width: number
   /** Other rows that could be the header just as well, by index. */
   rivals: number[]
+  /** Columns that the header names [count]; null where there is none. */
+  named: number | null
   headerChosen: boolean
 }
 /** Rows among which a header is looked for [count]. */
@@ -100,9 +102,10 @@ export function layOut(rows: FileRow[], choices: ReadingChoices): Layout {
   const firstData = rows.findIndex(looksLikeData)
   const first = header ?? (unit !== null && unit < firstData ? unit : firstData < 0 ? rows.length : firstData)
   const text = (index: number | null) => index === null ? null : folded(rows[index]!)
+  const named = header === null ? null : 1 + rows[header]!.cells.findLastIndex(cell => cell.trim() !== '')
   const place = { header, unit, first, headerText: text(header), unitText: text(unit) }
   return {
     kinds: rows.map((row, i) => kindOf(row, i, place)), header, unit, width: Math.max(header === null ? 0 : rows[header]!.cells.length, usual),
-    rivals: choices.headerLine === undefined ? guessed.rivals : [], headerChosen: choices.headerLine !== undefined,
+    named, rivals: choices.headerLine === undefined ? guessed.rivals : [], headerChosen: choices.headerLine !== undefined,
   }
 }

@@ -64,6 +64,7 @@ type Lines = { lines: LineRead[], kept: NamedLine[] }
 export function readLines(rows: FileRow[], frame: Frame, context: TableContext, choices: ReadingChoices, separator: Separator): Lines {
   const fillDown = new FillDown(frame, choices.fillDown), found: Lines = { lines: [], kept: [] }
   const aside = ({ line, cells }: FileRow, kind: LineRead['kind'], remark: string) => found.lines.push({ line, cells, kind, remark, kept: null })
+  const { interval, ratio, first, second } = frame.byMeaning, complete = interval !== undefined && (ratio !== undefined || (first !== undefined && second !== undefined))
   const end = frame.layout.kinds.lastIndexOf('data')
   rows.forEach((row, i) => {
     const kind = frame.layout.kinds[i]!, fits = fitting(row, frame), taken = fits ?? forced(row, frame, separator)
@@ -72,6 +73,7 @@ export function readLines(rows: FileRow[], frame: Frame, context: TableContext, 
     if (leftOut !== undefined) return aside(row, 'chosen', `set aside: ${leftOut}`)
     if (fits === null && choices.ragged === undefined) context.tally.note('ragged', row.line)
     if (fits === null && choices.ragged !== 'take') return aside(row, 'ragged', `set aside: ${row.cells.length} cells where the table has ${frame.layout.width}`)
+    if (!complete) return aside(row, 'open', 'waits until it is said what the columns hold')
     const { cells, nameless } = fillDown.apply(taken)
     if (nameless && choices.fillDown === undefined) context.tally.note('nameless', row.line)
     if (nameless) return aside(row, 'refused', 'refused: The condition or the cell has no name here.')

@@ -69,14 +69,15 @@ export function findTimeUnit(data: FileRow[], column: ColumnRead | undefined, by
 export function findRatioScale(data: FileRow[], column: ColumnRead | undefined, decimal: Decimal, settled: boolean, chosen?: Marks['ratioScale']): Found & { ratioScale: Marks['ratioScale'] } {
   const { values, own, from, to } = numbersOf(data, column, '1', decimal, settled)
   const above = values.filter(value => value > 1.5).length, most = above > values.length / 2, percent = column?.unit === '%', plain = column?.unit === '1'
-  const likely = most ? 'percent' : 'ratio', ratioScale = chosen ?? likely
+  // Paired pulses that facilitate reach 2; no ratio reaches 5.
+  const likely = most && Math.max(...values) > 5 ? 'percent' : 'ratio', ratioScale = chosen ?? likely
   const ask = !chosen && values.length > 0 && (percent ? !most : most)
   const range = values.length === 0 ? '' : `${above === 0 ? 'No value lies' : above === values.length ? 'Every value lies' : `${above} of ${values.length} values lie`} above 1.5`
   const says = percent ? ', and the name or unit line says %' : plain ? ', and the name or unit line says so' : ''
   const sentence = chosen ? 'Chosen.' : values.length === 0 && own > 0 ? 'Every value has its own per cent sign.' : `${range}${says}.`
   const guess: Guess = { id: 'ratio', label: 'Ratio', shown: ratioScale, sure: chosen ? 'chosen' : ask ? 'asked' : most ? 'guess' : 'certain', sentence, options: SCALE_OPTIONS }
   const doubt = percent ? 'The name or unit line says %, yet most values are 1.5 or less' : `Most values are above 1.5 (${from} to ${to})`
-  const question: Question | null = ask ? { id: 'ratio', must: true, lines: [], sentence: `${doubt}; is this percent?`, options: SCALE_OPTIONS, suggested: most ? 0 : null } : null
+  const question: Question | null = ask ? { id: 'ratio', must: true, lines: [], sentence: `${doubt}; is this percent?`, options: SCALE_OPTIONS, suggested: likely === 'percent' ? 0 : null } : null
   return { ratioScale, guess, question }
 }
 

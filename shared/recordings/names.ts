@@ -60,10 +60,10 @@ const NAMES: [RegExp, Meaning | 'bar'][] = [
   [/^(?:v ?cmd|v ?command|command|voltage|vm|v m|v hold|kommando)$/, 'command'],
   [/^(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?2 ?[/:÷] ?(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?1$/, 'ratio'],
   [words('ppr', 'ppr ratio', 'paired pulse ratio', 'ratio', 'mean ratio', 'ratio mean', 'recovery', 'mean recovery', 'recovery mean', 'recovery ratio', 'recovered', 'recovered fraction',
-    'fraction', 'fraction recovered', '(?:of )?(?:control|first)', 'recovery(?: of)? (?:control|first)', 'mean', 'normali[sz]ed(?: response)?', 'second ?/ ?first', 'erholung', 'mittelwert'), 'ratio'],
+    'fraction', 'fraction recovered', 'of (?:control|first)', 'recovery(?: of)? (?:control|first)', 'mean', 'normali[sz]ed(?: response)?', 'second ?/ ?first', 'erholung', 'mittelwert'), 'ratio'],
   [words('(?:first|1st)(?: response| pulse| epsc| peak| amplitude)?', '(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?1'), 'first'],
   [words('(?:second|2nd)(?: response| pulse| epsc| peak| amplitude)?', '(?:delta )?(?:cm|epsc|ipsc|psc|p|a|r|resp|response|peak|amp|amplitude|pulse) ?2'), 'second'],
-  [words('interval', 'intervals', 'dt', 'delta ?t', 'isi', 'ipi', 'ipsi', 'inter ?stimulus interval', 'inter ?pulse interval', 'recovery (?:interval|time)', 'delay', 'gap', 'lag', 'pulse interval', 'zeit(?:abstand)?', 'abstand'), 'interval'],
+  [words('interval', 'intervals', 'intervall', 'dt', 'delta ?t', 'isi', 'ipi', 'ipsi', 'inter ?stimulus interval', 'inter ?pulse interval', 'recovery (?:interval|time)', 'delay', 'gap', 'lag', 'pulse interval', 'zeit(?:abstand)?', 'abstand'), 'interval'],
   [words('time', 't', 'zeit', 'time point', 'elapsed'), 'time'],
 ]
 
@@ -76,7 +76,7 @@ export function readName(name: string): NameRead {
   const { bare, unit } = apart(name)
   const plain = bare.replace(/±/g, ' ± ').replace(/[._\-()[\]:]+/g, ' ').replace(/\s+/g, ' ').trim()
   const found = NAMES.find(([pattern]) => pattern.test(plain))?.[1] ?? null
-  return found === 'bar' ? { meaning: null, bar: true, unit } : { meaning: found ?? (plain === '' && unit === '%' ? 'ratio' : null), bar: false, unit }
+  return found === 'bar' ? { meaning: null, bar: true, unit } : { meaning: found ?? (unit === '%' && /^(?:control|first)?$/.test(plain) ? 'ratio' : null), bar: false, unit }
 }
 
 /** A spreadsheet's letter for a column index from 0: A … Z, AA … */

@@ -8,7 +8,7 @@ import { decodeBytes, type Decoded } from './decode'
 import { frameOf, type Frame } from './frame'
 import { readLines } from './lines'
 import { shapeOf } from './mapping'
-import { findRepeats, unsortedWarning } from './repeats'
+import { alikeWarning, findRepeats, unsortedWarning } from './repeats'
 import type { Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
 import { runDownWarning } from './rundown'
 import { MOST_CELLS, lineEndsOf, splitRows, type SplitText } from './rows'
@@ -38,6 +38,7 @@ function refusals(split: SplitText, frame: Frame): FieldProblem[] {
   const data = frame.layout.kinds.filter(kind => kind === 'data').length
   const wide = split.rows.find(row => row.cells.length > MOST_CELLS)
   if (split.unclosed) return [refuse(split.unclosed.sentence)]
+  if (data === 0 && split.rows.every(row => row.cells.length < 2)) return [refuse('This file has a single column; an interval and a ratio are wanted in each row.')]
   if (data === 0) return [refuse('This file has no rows of numbers.')]
   if (wide) return [refuse(`Line ${wide.line} has ${wide.cells.length} cells; at most ${MOST_CELLS} are taken.`)]
   if (frame.kind !== 'trace' && data > RECORDING_LIMITS.points) return [refuse(`This table has ${data} rows; at most ${RECORDING_LIMITS.points} are kept in one recording.`)]
@@ -47,10 +48,12 @@ function refusals(split: SplitText, frame: Frame): FieldProblem[] {
   return ratio || (first && second) ? [] : [refuse('No column is the ratio, and there are no two responses to make it from; choose which one is.')]
 }
 
-const isAside = (line: LineRead) => line.kind !== 'header' && line.kind !== 'point'
+const isAside = (line: LineRead) => !['header', 'point', 'open'].includes(line.kind)
 
 function sentenceOf(kind: Reading['kind'], points: number, lines: LineRead[], fileLines: number): string {
   const aside = lines.filter(isAside).length, noun = kind === 'cells' ? 'measurement' : 'point'
+  const open = lines.filter(line => line.kind === 'open').length
+  if (open > 0) return `${open} rows wait until it is said what their columns hold.`
   const read = `${points} ${noun}${points === 1 ? '' : 's'} read`
   return aside === 0 ? `${read}; none of ${fileLines} lines set aside.` : `${read}; ${aside} of ${fileLines} lines set aside, each with its reason.`
 }
@@ -108,7 +111,7 @@ function readTable(split: SplitText, frame: Frame, separator: Separator, choices
   const lost = counts.filter(count => count.empty > 0).map(count => ({ id: 'empty', lines: [], sentence: `${count.condition}: ${count.empty} of ${count.rows} empty. They count as lost, never as 0.` }))
   const problems = kept.length === 0 && !questions.some(one => one.must) ? [{ path: 'file', message: 'No line could be kept; each says why.' }] : []
   return {
-    ...blank, lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost, ...rundown],
+    ...blank, lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost, ...rundown, ...alikeWarning(conditions.map(one => one.condition))],
     setAside: lines.filter(isAside).map(({ line, remark }) => ({ line, reason: remark.replace(/^set aside: /, '').slice(0, 300) })),
     sentence: sentenceOf(kind, kept.length, lines, split.lines), ready: problems.length === 0 && kept.length > 0 && !questions.some(one => one.must),
   }

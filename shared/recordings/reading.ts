@@ -57,7 +57,7 @@ export interface Question {
 }
 export interface Warning { id: string, sentence: string, lines: number[] }
 
-export type LineKind = 'header' | 'point' | 'title' | 'blank' | 'empty' | 'unit' | 'again' | 'remark' | 'refused' | 'ragged' | 'lost' | 'chosen'
+export type LineKind = 'header' | 'point' | 'title' | 'blank' | 'empty' | 'unit' | 'again' | 'remark' | 'refused' | 'ragged' | 'lost' | 'chosen' | 'open'
 export interface KeptValues {
   condition: string
   cell: string | null

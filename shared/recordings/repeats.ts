@@ -34,3 +34,10 @@ export function unsortedWarning(lines: NamedLine[]): Warning[] {
   }
   return falling.length === 0 ? [] : [{ id: 'unsorted', lines: falling, sentence: `${named(falling)}: the interval is shorter than in the row before. The view is sorted by interval; the file keeps its order.` }]
 }
+
+/** Conditions whose names differ by capitals or blanks only: perhaps one condition. */
+export function alikeWarning(names: string[]): Warning[] {
+  const fold = (name: string) => name.toLowerCase().replace(/[\s_-]+/g, ' ').trim()
+  const alike = names.filter((name, i) => names.some((other, j) => j !== i && other !== name && fold(other) === fold(name)))
+  return alike.length === 0 ? [] : [{ id: 'alike', lines: [], sentence: `${alike.map(name => `“${name}”`).join(' and ')} are read as different conditions; their names differ by capitals or blanks only.` }]
+}

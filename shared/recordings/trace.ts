@@ -1,7 +1,7 @@
 /** Steps of capacitance from a trace: windows before and after each stimulus, their means, and what each choice changes. */
 import type { FieldProblem } from '../schemas/problem'
 import { firstAt, type Trace } from './trace-samples'
-import { checkWindows, windowsOf, type StepWindows } from './windows'
+import { checkWindows, windowsOf, type StepWindows, type Window } from './windows'
 
 export interface Stimulus { startS: number, endS: number }
 export interface TraceSettings {
@@ -66,7 +66,7 @@ function lineThrough({ timeS, capacitanceFf }: Trace, fromS: number, toS: number
 }
 
 function measureStep(trace: Trace, stimulus: Stimulus, settings: TraceSettings): StepMeasure {
-  const windows = windowsOf(stimulus, settings), expected = (window: { fromS: number, toS: number }) => Math.max(1, Math.round((window.toS - window.fromS) / trace.sampleS))
+  const windows = windowsOf(stimulus, settings), expected = ({ fromS, toS }: Window) => Math.max(1, Math.round((toS - fromS) / trace.sampleS))
   const before = lineThrough(trace, windows.baseline.fromS, windows.baseline.toS, false), after = lineThrough(trace, windows.measure.fromS, windows.measure.toS, true)
   const reach = after.centre - before.centre, slopeError = before.noise / Math.sqrt(before.spread)
   const baseline = settings.subtractSlope ? before.mean + before.slope * reach : before.mean

@@ -27,7 +27,7 @@ const overlap = (one: Window, other: Window): Window | null => {
 const shown = (value: number) => String(Number(value.toFixed(6)))
 const span = ({ fromS, toS }: Window) => `${shown(fromS)} to ${shown(toS)} s`
 
-interface Named { path: string, name: string, window: Window }
+interface Named { path: string, name: string, stretch: Window }
 
 function lengths(settings: TraceSettings): FieldProblem[] {
   const fields = [['baselineMs', 'The baseline window', 1], ['skipMs', 'The skip', 0], ['measureMs', 'The measured window', 1]] as const
@@ -44,14 +44,14 @@ function lengths(settings: TraceSettings): FieldProblem[] {
 function overlaps(settings: TraceSettings): FieldProblem[] {
   const ordinal = ['first', 'second'], windows = settings.stimuli.map(stimulus => windowsOf(stimulus, settings))
   const own: Named[] = windows.flatMap(({ baseline, measure }, i) => [
-    { path: `trace.windows.${i}.baseline`, name: `The baseline window of the ${ordinal[i]} stimulus`, window: baseline },
-    { path: `trace.windows.${i}.measure`, name: `The measured window of the ${ordinal[i]} stimulus`, window: measure },
+    { path: `trace.windows.${i}.baseline`, name: `The baseline window of the ${ordinal[i]} stimulus`, stretch: baseline },
+    { path: `trace.windows.${i}.measure`, name: `The measured window of the ${ordinal[i]} stimulus`, stretch: measure },
   ])
-  const stimuli: Named[] = settings.stimuli.map((stimulus, i) => ({ path: '', name: `the ${ordinal[i]} stimulus`, window: { fromS: stimulus.startS, toS: stimulus.endS } }))
+  const stimuli: Named[] = settings.stimuli.map((stimulus, i) => ({ path: '', name: `the ${ordinal[i]} stimulus`, stretch: { fromS: stimulus.startS, toS: stimulus.endS } }))
   const lower = (text: string) => text.charAt(0).toLowerCase() + text.slice(1)
   return own.flatMap((one, i) => [...stimuli, ...own.slice(i + 1)].flatMap((other): FieldProblem[] => {
-    const both = overlap(one.window, other.window)
-    return both ? [{ path: one.path, message: `${one.name} (${span(one.window)}) and ${lower(other.name)} (${span(other.window)}) overlap from ${span(both)}.` }] : []
+    const both = overlap(one.stretch, other.stretch)
+    return both ? [{ path: one.path, message: `${one.name} (${span(one.stretch)}) and ${lower(other.name)} (${span(other.stretch)}) overlap from ${span(both)}.` }] : []
   }))
 }
 
@@ -72,9 +72,9 @@ export function checkWindows(trace: Trace, settings: TraceSettings): FieldProble
   if (early.length > 0) return early
   const crossed = overlaps(settings), least = settings.baselineMs + settings.skipMs + settings.measureMs
   if (crossed.length > 0) return [...crossed, ...settings.stimuli[1].startS - settings.stimuli[0].endS < least / 1000 - SLACK ? [{ path: 'trace.stimuli', message: `Between the stimuli separate windows of these lengths need ${least} ms.` }] : []]
-  return settings.stimuli.flatMap((stimulus, i) => Object.entries(windowsOf(stimulus, settings)).flatMap(([key, window]): FieldProblem[] => {
-    const path = `trace.windows.${i}.${key}`, share = filled(trace, window)
-    if (window.fromS < trace.timeS[0]! - trace.sampleS / 2 || window.toS > trace.timeS.at(-1)! + 1.5 * trace.sampleS) return [{ path, message: `This window (${span(window)}) reaches beyond the trace.` }]
-    return share < LEAST_FILLED ? [{ path, message: `This window (${span(window)}) holds ${Math.round(100 * share)} % of its samples; at least ${100 * LEAST_FILLED} % are wanted.` }] : []
+  return settings.stimuli.flatMap((stimulus, i) => Object.entries(windowsOf(stimulus, settings)).flatMap(([key, stretch]): FieldProblem[] => {
+    const path = `trace.windows.${i}.${key}`, share = filled(trace, stretch)
+    if (stretch.fromS < trace.timeS[0]! - trace.sampleS / 2 || stretch.toS > trace.timeS.at(-1)! + 1.5 * trace.sampleS) return [{ path, message: `This window (${span(stretch)}) reaches beyond the trace.` }]
+    return share < LEAST_FILLED ? [{ path, message: `This window (${span(stretch)}) holds ${Math.round(100 * share)} % of its samples; at least ${100 * LEAST_FILLED} % are wanted.` }] : []
   }))
 }

@@ -72,6 +72,9 @@ describe('conditions', () => {
     const reading = read(table(['a,long,50,0.15', 'a,short,50,0.6'], 'condition,protocol,interval_ms,ratio'))
     expect(reading.conditions.map(one => one.condition)).toEqual(['a, long', 'a, short'])
   })
+  it('warns of names that differ by capitals or blanks only', () => {
+    expect(read(table(['Control,50,0.15', 'control ,100,0.2'], 'condition,interval_ms,ratio')).warnings.find(one => one.id === 'alike')!.sentence).toContain('“Control” and “control”')
+  })
   it('asks whether a name holds for the rows below', () => {
     const text = table(['a,50,0.15', ',100,0.2', 'b,50,0.1'], 'condition,interval_ms,ratio')
     expect(read(text).questions.find(one => one.id === 'nameless')).toMatchObject({ must: true, lines: [3] })

@@ -1,5 +1,6 @@
 /** Tables as they come: separators, ragged rows, quotes, headers, percent, missing values, dates. */
 import { describe, expect, it } from 'vitest'
+import { withAnswer } from '../../../shared/recordings/choices'
 import { lineOf, PLAIN, questionIds, read, table, warningIds } from './support'
 
 describe('separators and rows', () => {
@@ -69,6 +70,26 @@ describe('headers', () => {
     expect(questionIds(answered)).toEqual(['time'])
     expect(read(text, { columns: { 0: 'interval', 1: 'ratio', 2: 'sem', 3: 'n' }, timeUnit: 'ms' })).toMatchObject({ ready: true, conditions: [{ points: [{ intervalMs: 50, ratio: 0.15 }, {}, {}] }] })
   })
+  it('asks where rows are wider than their header: split decimal commas are never taken for columns', () => {
+    const split = read('interval_s,recovery,sem,n\n0,05,15,0,0,8,9\n0,1,18,1,1,9,8')
+    expect(split.questions).toMatchObject([{ id: 'header-width', must: true }])
+    expect(split.questions[0]!.sentence).toContain('The header names 4 columns, yet the rows have 7 cells.')
+    expect(split.ready).toBe(false)
+    const numbered = read('interval_ms,ratio,n\n1,50,0.15,9\n2,100,0.2,9'), options = numbered.questions.find(one => one.id === 'header-width')!.options
+    const shifted = read('interval_ms,ratio,n\n1,50,0.15,9\n2,100,0.2,9', options[1]!.choices)
+    expect(shifted).toMatchObject({ ready: true, conditions: [{ points: [{ intervalMs: 50, ratio: 0.15, n: 9 }, { intervalMs: 100 }] }] })
+  })
+  it('lets rows wait while nothing says what their columns hold', () => {
+    const reading = read('interval_ms;control;peptide\n50;0.15;0.13\n100;0.2;0.14')
+    expect(questionIds(reading)).toEqual(['column-B', 'column-C'])
+    expect(reading).toMatchObject({ sentence: '2 rows wait until it is said what their columns hold.', setAside: [], ready: false, conditions: [] })
+    const answered = reading.questions.reduce((choices, question, i) => withAnswer(choices, question.options.find(one => one.label === (i === 0 ? 'ratio (second over first)' : 'left out'))!.choices), {})
+    expect(read('interval_ms;control;peptide\n50;0.15;0.13\n100;0.2;0.14', answered)).toMatchObject({ ready: true, conditions: [{ points: [{ ratio: 0.15 }, { ratio: 0.2 }] }] })
+  })
+  it('says so where there is one column, or no number at all', () => {
+    expect(read('ratio\n0.1\n0.2').problems[0]!.message).toContain('single column')
+    expect(read('Dear all,\nplease find the numbers below; they are good.').problems[0]!.message).toBe('This file has no rows of numbers.')
+  })
   it('asks of an error bar which kind it is', () => {
     const text = ['interval_ms,ratio,error,n', '50,0.15,0.02,9', '100,0.2,0.02,9'].join('\n')
     expect(read(text).questions).toMatchObject([{ id: 'column-C', must: true, options: [{ label: 'SEM' }, { label: 'SD' }, { label: 'half-width of the 95 % interval' }] }])
@@ -104,6 +125,11 @@ describe('marks and units', () => {
   })
   it('asks where the header says % and the values do not', () => {
     expect(questionIds(read(table(PLAIN, 'interval_ms,recovery (%),sem,n')))).toEqual(['ratio'])
+  })
+  it('asks, and suggests nothing, where paired pulses facilitate', () => {
+    const reading = read(table(['20,1.8,0.1,9', '50,1.6,0.1,9', '100,1.3,0.1,9'], 'ISI (ms),PPR,SEM,n'))
+    expect(reading.questions).toMatchObject([{ id: 'ratio', suggested: null }])
+    expect(reading.conditions[0]!.points[0]!.ratio).toBe(1.8)
   })
   it('takes a ratio above 1 and one below 0', () => {
     const reading = read(table([...PLAIN, '800,1.07,0.01,9', '10,-0.02,0.01,9', '20,\u22120.01,0.01,9']))
