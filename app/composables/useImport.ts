@@ -1,6 +1,8 @@
 /** The import of a file: what is read, what is kept of it, under which names; sent only when a person says so. */
-import type { KeptMapping, RecordingDetail, Upload } from '#shared/schemas/api/recording'
+import type { Page } from '#shared/schemas/api/bench'
+import type { KeptMapping, RecordingDetail, RecordingRow, Upload } from '#shared/schemas/api/recording'
 import type { ReadingChoices } from '#shared/recordings/choices'
+import { UNNAMED } from '#shared/recordings/conditions'
 import { UNTOUCHED, type ConditionData } from '#shared/recordings/types'
 import { parseQuantity } from '#shared/units'
 import { recordingSummary } from '~/utils/recordingSeries'
@@ -8,12 +10,16 @@ import { recordingSummary } from '~/utils/recordingSeries'
 export interface KeepDraft { from: string, keep: boolean, title: string, condition: string, protocol: string, manipulation: string, data: ConditionData, summary: string }
 
 const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1)
-function draftOf(data: ConditionData): KeepDraft {
+/** A file that names no condition is called after itself. */
+const baseName = (fileName: string) => fileName.replace(/\.[^.]*$/, '').replace(/[_-]+/g, ' ').trim()
+
+function draftOf(data: ConditionData, fileName: string, protocols: readonly string[]): KeepDraft {
+  const named = data.condition === UNNAMED.condition ? { ...data, condition: baseName(fileName) || data.condition } : data
   const cells = new Set(data.cells.map(cell => cell.cell)).size, n = Math.max(0, ...data.points.map(point => point.n ?? 0))
   const count = cells || n
   return {
-    from: data.condition, keep: true, title: `${capital(data.condition)}${count ? `, ${count} ${count === 1 ? 'cell' : 'cells'}` : ''}`,
-    condition: data.condition, protocol: data.protocol, manipulation: data.manipulation || UNTOUCHED, data, summary: recordingSummary(data),
+    from: data.condition, keep: true, title: `${capital(named.condition)}${count ? `, ${count} ${count === 1 ? 'cell' : 'cells'}` : ''}`,
+    condition: named.condition, protocol: data.protocol === UNNAMED.protocol ? protocols[0] ?? data.protocol : data.protocol, manipulation: data.manipulation || UNTOUCHED, data, summary: recordingSummary(data),
   }
 }
 
@@ -28,13 +34,19 @@ export function useImport() {
   const offered = shallowRef<KeptMapping | null>(null)
   const already = shallowRef<Upload['already']>([])
   let asked = ''
+  /** Names that the bench uses already, offered while typing. */
+  const list = useRead<Page<RecordingRow>>(() => session.bench ? `/api/benches/${session.bench.benchId}/recordings?limit=100` : null)
+  const known = computed(() => {
+    const rows = list.answer.value?.rows ?? [], names = (of: (row: RecordingRow) => string) => [...new Set(rows.map(of))]
+    return { conditions: names(row => row.condition), protocols: names(row => row.protocol), manipulations: [...new Set([UNTOUCHED, ...names(row => row.manipulation)])] }
+  })
 
   const reading = computed(() => source.read.value?.ok ? source.read.value.reading : null)
   watch(reading, (now) => {
     // Names that a person typed stay with their condition while choices change.
     drafts.value = (now?.conditions ?? []).map((data) => {
       const before = drafts.value.find(draft => draft.from === data.condition)
-      return before ? { ...before, data, summary: recordingSummary(data) } : draftOf(data)
+      return before ? { ...before, data, summary: recordingSummary(data) } : draftOf(data, source.file.value?.name ?? '', known.value.protocols)
     })
     if (now && asked === '') void ask(now.shape)
   })
@@ -88,5 +100,5 @@ export function useImport() {
     } })
     await navigateTo(made.length === 1 ? `/recordings/${made[0]!.recordingId}` : '/recordings')
   })
-  return { source, reading, drafts, details, tags, keepMapping, offered, already, obstacle, keeping, open, useOffered }
+  return { source, reading, known, drafts, details, tags, keepMapping, offered, already, obstacle, keeping, open, useOffered }
 }
