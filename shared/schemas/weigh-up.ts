@@ -126,3 +126,13 @@ export type WeighUpParameter = z.infer<typeof parameter>
 export type WeighVerdict = z.infer<typeof verdict>
 export type WeighSettle = z.infer<typeof settles>
 export type WeighResample = z.infer<typeof resample>
+
+const judged = { kind: z.enum(['prefers', 'cannot-tell']), explanation: explanation.nullable(), within: z.array(explanation), margin: number, changesNamed: z.boolean(), same: z.boolean() }
+/** The verdict under other assumptions. */
+export const WeighSensitivitySchema = z.strictObject({
+  depletions: z.array(z.strictObject({ protocol: text, value: number, acceptable: z.boolean(), ...judged })),
+  uneven: z.strictObject({ judged: z.strictObject(judged).nullable(), sentence: text }),
+  sentence: text,
+  rescale: text,
+})
+export type WeighSensitivity = z.infer<typeof WeighSensitivitySchema>

@@ -24,6 +24,8 @@ export interface ExplanationModel {
   starts: number[][]
   /** Two rates that may change places, with what else changes then. */
   exchange: { first: number, second: number, share: number | null, larger: 'first' | 'second' } | null
+  /** Place of a parameter that each protocol but the first has for itself, and no manipulation changes; it is 0 for the first. */
+  perProtocol?: number
 }
 
 const rate = (name: string, label: string, lower = 1e-3, upper = 200): ShapeParameter => ({ name, label, unit: '1/s', log: true, lower, upper })
@@ -60,7 +62,7 @@ export const MODELS: Record<Explanation, ExplanationModel> = {
 
 /** Two kinds of site of which the first stimulus may empty unequal parts: for the sensitivity only. */
 export const UNEVEN_SITES: ExplanationModel = {
-  id: 'site-kinds-uneven', curve: CURVES['site-kinds-uneven'], exchange: null,
+  id: 'site-kinds-uneven', curve: CURVES['site-kinds-uneven'], exchange: null, perProtocol: 3,
   parameters: [...siteParameters, { name: 'emptyingOdds', label: 'Odds by which quick sites are emptied more', unit: '1', log: true, lower: 0.02, upper: 50 }],
   starts: MODELS['site-kinds'].starts.map(start => [...start, 1]),
 }

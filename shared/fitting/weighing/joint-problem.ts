@@ -16,7 +16,7 @@ export interface Slot {
   protocol: string | null
 }
 
-/** Where each condition finds its parameters: slot numbers, −1 for a typed depletion. */
+/** Where each condition finds its parameters: slot numbers, −1 for a typed depletion (or for what the first protocol has not). */
 export interface Layout { slots: Slot[], of: Int32Array[], lower: number[], upper: number[] }
 
 const LEAST_DEPLETION = 0.05
@@ -42,7 +42,7 @@ class LayoutBuilder {
  */
 export function layOut(model: ExplanationModel, conditions: readonly WeighCondition[], changes: Changes, data: WeighData, typed: TypedDepletion = {}): Layout {
   const builder = new LayoutBuilder(), shape = model.parameters.length
-  for (let place = 0; place < shape; place++) builder.find({ place, manipulation: null, protocol: null })
+  for (let place = 0; place < shape; place++) if (place !== model.perProtocol) builder.find({ place, manipulation: null, protocol: null })
   const depletionOf = ({ protocol, manipulation }: WeighCondition): Slot => ({ place: shape, protocol, manipulation: changes.get(manipulation) === shape ? manipulation : null })
   const free = conditions.filter(one => typed[one.protocol] === undefined)
   for (const one of free) if (changes.get(one.manipulation) !== shape) builder.find(depletionOf(one))
@@ -50,6 +50,7 @@ export function layOut(model: ExplanationModel, conditions: readonly WeighCondit
   const of = conditions.map((one) => {
     const places = Int32Array.from({ length: shape + 1 }, (_, place) => {
       if (place === shape) return typed[one.protocol] === undefined ? builder.find(depletionOf(one)) : -1
+      if (place === model.perProtocol) return one.protocol === data.protocols[0] ? -1 : builder.find({ place, manipulation: null, protocol: one.protocol })
       return builder.find({ place, manipulation: changes.get(one.manipulation) === place ? one.manipulation : null, protocol: null })
     })
     return places
@@ -86,7 +87,7 @@ export class JointProblem implements LeastSquaresProblem {
   /** Parameters of one condition, in the model's order. */
   localOf(at: ArrayLike<number>, c: number): Float64Array {
     const of = this.layout.of[c]!
-    for (let place = 0; place < of.length; place++) this.local[place] = of[place]! < 0 ? this.typed[this.conditions[c]!.protocol]! : at[of[place]!]!
+    for (let place = 0; place < of.length; place++) this.local[place] = of[place]! >= 0 ? at[of[place]!]! : place === of.length - 1 ? this.typed[this.conditions[c]!.protocol]! : 0
     return this.local
   }
 

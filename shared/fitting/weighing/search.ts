@@ -121,7 +121,7 @@ export class ExplanationSearch {
   }
 
   placesOf(manipulation: string): number[] {
-    return Array.from({ length: this.shape + 1 }, (_, place) => place).filter(place => place < this.shape || this.depletionCanChange(manipulation))
+    return Array.from({ length: this.shape + 1 }, (_, place) => place).filter(place => place < this.shape ? place !== this.model.perProtocol : this.depletionCanChange(manipulation))
   }
 
   /** The start with the changed parameter put where a scan finds χ² least. */
