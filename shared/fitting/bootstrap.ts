@@ -6,10 +6,9 @@ import { seedWords, stateOf, Stream } from '../walk/streams'
 import { curveProblem, placesOf, type Curve } from './curve-problem'
 import { normalDeviates } from './deviates'
 import type { SearchedFit } from './fit'
-import type { FitDesign } from './fit-design'
-import { bestOf, FEW_SHAPES, startOf } from './fit-search'
+import { bestOf, FEW_SHAPES, startOf, startsFromOne } from './fit-search'
 import { fitLeastSquares, SEARCH } from './least-squares'
-import { PLACE, PLACES, recoveryAt } from './recovery-model'
+import { PLACES, recoveryAt } from './recovery-model'
 
 export const BOOTSTRAP_RESAMPLES = 999
 export const BOOTSTRAP_SEED = 'one or two'
@@ -38,27 +37,6 @@ export interface BootstrapResult {
 
 const ratioOf = (known: boolean, points: number, one: number, two: number): number =>
   known ? Math.max(0, one - two) : points * Math.log(Math.max(1, one / Math.max(two, 1e-300)))
-
-/**
- * The one-exponential fit written as two, with both time constants near it: so that two never fit worse.
- * @param two - design with two exponentials
- * @param one - design with one, of the same conditions
- * @param x - its fit [1, ln s]
- * @returns starts for the two [1, ln s]
- */
-export function startsFromOne(two: FitDesign, one: FitDesign, x: Float64Array): Float64Array[] {
-  const places = one.curves.map((curve) => {
-    const at = new Float64Array(PLACES)
-    placesOf(curve, x, at)
-    return at
-  })
-  return [[0.5, Math.log(1.5)], [0.9, Math.log(4)]].map(([share, apart]) => Float64Array.from(two.slots, ({ place, curves }) => {
-    const at = places[curves[0]!]!
-    if (place === PLACE.fastShare) return share!
-    if (place === PLACE.logTauFast) return at[PLACE.logTauFast]! - apart!
-    return place === PLACE.logTauSlow ? at[PLACE.logTauFast]! + apart! : at[place]!
-  }))
-}
 
 /** New ratios about a curve: independent errors, or errors that the whitening factor would make independent again (W·e = z, solved from the first row down). */
 function draw({ ratios, weights, whitening }: Curve, fitted: Float64Array, deviates: Float64Array, scatter: number): void {

@@ -1,6 +1,6 @@
 /** One exponential beside two, on the same points: criteria on one scale, and the bootstrap between them. */
 import type { ConditionData } from '../recordings/types'
-import { bootstrapOneAgainstTwo, startsFromOne, type BootstrapOptions, type BootstrapResult } from './bootstrap'
+import { bootstrapOneAgainstTwo, type BootstrapOptions, type BootstrapResult } from './bootstrap'
 import { excessScatter } from './criteria'
 import { finishFit, searchConditions, type RecoveryFit } from './fit'
 import type { FitOptions } from './fit-design'
@@ -23,7 +23,7 @@ export interface BothFits {
 export function fitBoth(conditions: readonly ConditionData[], options: Omit<FitOptions, 'model'>, bootstrap: BootstrapOptions = {}): BothFits | FitRefusal {
   const one = searchConditions(conditions, { ...options, model: 'one' })
   if ('refused' in one) return one
-  const two = searchConditions(conditions, { ...options, model: 'two' }, design => startsFromOne(design, one.design, one.found.parameters))
+  const two = searchConditions(conditions, { ...options, model: 'two' })
   if ('refused' in two) return two
   const scale = two.design.weighted.weights === 'none' ? 1 : excessScatter(two.found.chi2, two.found.residuals.length - two.design.slots.length)
   return { fits: [finishFit(one, scale), finishFit(two, scale)], bootstrap: bootstrapOneAgainstTwo(one, two, bootstrap) }

@@ -1,15 +1,15 @@
 /** From starts to the best fit: many short tries, a few to the end, the best one to its last digits. */
-import { curveProblem, isLogarithmic, type Slot } from './curve-problem'
+import { curveProblem, isLogarithmic, placesOf, type Slot } from './curve-problem'
 import type { FitDesign } from './fit-design'
 import { fitLeastSquares, SEARCH, type LeastSquaresFit, type LeastSquaresOptions, type LeastSquaresProblem } from './least-squares'
-import { PLACE } from './recovery-model'
+import { PLACE, PLACES } from './recovery-model'
 
 /** Last steps from a minimum that is already found. */
 const POLISH: LeastSquaresOptions = { damping: 1e-4, iterations: 200, changeTolerance: 1e-15, changeFloor: 0, stepTolerance: 1e-13, confirmations: 2 }
 /** Iterations of a first try. */
 const FIRST_ITERATIONS = 12
 /** How many of the short tries go to the end. */
-const KEPT = 4
+const KEPT = 6
 
 /** A start by meaning: share, and time constants over the longest interval. */
 export interface StartShape { share: number, tauFast: number, tauSlow: number }
@@ -20,7 +20,7 @@ const SHAPES: Record<FitDesign['model'], readonly StartShape[]> = {
     .map(([share, tauFast, tauSlow]) => ({ share: share!, tauFast: tauFast!, tauSlow: tauSlow! })),
 }
 /** For resampling, where the minimum is known nearly. */
-export const FEW_SHAPES: readonly StartShape[] = [SHAPES.two[0]!, SHAPES.two[1]!, SHAPES.two[3]!]
+export const FEW_SHAPES: readonly StartShape[] = [SHAPES.two[0]!]
 
 /** Depletion to start from: what the first point of its curves lacks. */
 function lacking({ curves, slots }: FitDesign, slot: Slot): number {
@@ -43,6 +43,34 @@ export function startOf(design: FitDesign, shape: StartShape): Float64Array {
     if (slot.place === PLACE.fastShare) return shape.share
     return Math.log(last * (slot.place === PLACE.logTauFast ? shape.tauFast : shape.tauSlow))
   })
+}
+
+/**
+ * The one-exponential fit written as two: both time constants near it, so that two never fit worse; a phase before the first interval; one after the last.
+ * @param two - design with two exponentials
+ * @param one - design with one, of the same conditions
+ * @param x - its fit [1, ln s]
+ * @returns starts for the two [1, ln s]
+ */
+export function startsFromOne(two: FitDesign, one: FitDesign, x: Float64Array): Float64Array[] {
+  const places = one.curves.map((curve) => {
+    const at = new Float64Array(PLACES)
+    placesOf(curve, x, at)
+    return at
+  })
+  const [early, late] = [Math.log(two.spanS[0] / 3), Math.log(two.spanS[1] * 8)]
+  const splits: ((tau: number) => { share: number, fast: number, slow: number, more: number })[] = [
+    tau => ({ share: 0.5, fast: tau - Math.log(1.5), slow: tau + Math.log(1.5), more: 1 }),
+    tau => ({ share: 0.9, fast: tau - Math.log(4), slow: tau + Math.log(4), more: 1 }),
+    tau => ({ share: 0.4, fast: early, slow: tau, more: 1 / 0.6 }),
+    tau => ({ share: 0.95, fast: tau, slow: late, more: 1 }),
+  ]
+  return splits.map(split => Float64Array.from(two.slots, ({ place, curves }) => {
+    const at = places[curves[0]!]!, { share, fast, slow, more } = split(at[PLACE.logTauFast]!)
+    if (place === PLACE.fastShare) return share
+    if (place === PLACE.depletion) return more * at[place]!
+    return place === PLACE.logTauFast ? fast : place === PLACE.logTauSlow ? slow : at[place]!
+  }))
 }
 
 /**

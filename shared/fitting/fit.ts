@@ -6,7 +6,7 @@ import { excessScatter, knownErrorCriterion, scatterCriteria } from './criteria'
 import { isLogarithmic, placesOf } from './curve-problem'
 import { fitDesign, type FitDesign, type FitOptions } from './fit-design'
 import { isResolved, notesOf, refusalOf } from './fit-notes'
-import { inOrder, polish, searchFit, type FoundFit } from './fit-search'
+import { inOrder, polish, searchFit, startsFromOne, type FoundFit } from './fit-search'
 import { covarianceOf } from './least-squares'
 import type { FitNote, FitRefusal, Weights } from './point-errors'
 import { profileBounds } from './profile-intervals'
@@ -124,14 +124,20 @@ export interface SearchedFit { design: FitDesign, found: FoundFit }
  * Lays out and searches, without errors and intervals: what resampling and comparisons start from.
  * @param conditions - fitted together
  * @param options - model, weights, what is free, shared or held
- * @param more - further starts for this design
  * @returns design and minimum, or why there is none
  */
-export function searchConditions(conditions: readonly ConditionData[], options: FitOptions, more: (design: FitDesign) => Float64Array[] = () => []): SearchedFit | FitRefusal {
+export function searchConditions(conditions: readonly ConditionData[], options: FitOptions): SearchedFit | FitRefusal {
   const design = fitDesign(conditions, options)
   if ('refused' in design) return design
   const refused = refusalOf(design)
-  return refused ?? { design, found: searchFit(design, [...startsOfParts(conditions, options, design), ...more(design)]) }
+  return refused ?? { design, found: searchFit(design, [...startsOfParts(conditions, options, design), ...startsOfOne(conditions, options, design)]) }
+}
+
+/** For two exponentials, starts from the fit of one. */
+function startsOfOne(conditions: readonly ConditionData[], options: FitOptions, two: FitDesign): Float64Array[] {
+  if (options.model === 'one') return []
+  const { tauFastS: tauS, ...share } = options.share ?? {}, one = fitDesign(conditions, { ...options, model: 'one', share: tauS ? { ...share, tauS } : share })
+  return 'refused' in one ? [] : startsFromOne(two, one, searchFit(one).parameters)
 }
 
 /** Starts from the fit of each condition alone: every shared parameter at the mean of its parts. */

@@ -45,7 +45,7 @@ describe('a joint fit', () => {
     expect(joint.dof).toBe(21)
   })
   it('a wrong sharing costs χ²', () => {
-    const wrong = accepted(fitConditions(THREE, { model: 'two', share: { fastShare: 'all' } }))
+    const wrong = accepted(fitConditions(THREE, { model: 'two', share: { fastShare: 'all', tauFastS: 'all', tauSlowS: 'all' } }))
     expect(wrong.chi2).toBeGreaterThan(100)
     expect(codesOf(wrong)).toContain('poor-fit')
   })
