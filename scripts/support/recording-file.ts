@@ -81,5 +81,5 @@ export function readConditions(file: string, choices: ReadingChoices): { conditi
   if (asked.length > 0) throw new BadInput(asked.map(question => ({ path: file, message: askedText(question) })))
   if (!reading.ready) throw badInput(file, reading.sentence)
   const aside = reading.lines.filter(line => line.kind === 'refused' || line.kind === 'ragged').map(line => `line ${line.line} is left out, ${line.remark.replace(/^set aside: /, '')}`)
-  return { conditions: reading.conditions, notes: [...aside, ...reading.warnings.map(({ sentence, lines }) => lines.length > 0 ? `line ${lines.slice(0, 5).join(', ')}: ${sentence}` : sentence)] }
+  return { conditions: reading.conditions, notes: [...aside, ...reading.warnings.map(({ sentence, lines }) => lines.length > 0 && !/^Lines? \d/.test(sentence) ? `${lines.length === 1 ? 'line' : 'lines'} ${lines.slice(0, 5).join(', ')}${lines.length > 5 ? ' …' : ''}: ${sentence}` : sentence)] }
 }
