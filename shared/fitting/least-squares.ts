@@ -67,28 +67,41 @@ class Search {
   residuals: Float64Array
   jacobian: Float64Array
   chi2 = Infinity
-  private trial: { residuals: Float64Array, jacobian: Float64Array }
+  private trial: { x: Float64Array, residuals: Float64Array, jacobian: Float64Array }
+  private readonly low: Float64Array
+  private readonly high: Float64Array
+  /** Reserved once: the Jacobian's triangle with its right side, and the damped system of one step. */
+  private readonly linear: Linear
+  private readonly matrix: Float64Array
+  private readonly right: Float64Array
+  private readonly damped: Float64Array
+  private readonly rest: Float64Array
 
   constructor(private readonly problem: LeastSquaresProblem, start: ArrayLike<number>) {
     this.m = problem.points
     this.n = problem.parameters
-    this.scales = new Float64Array(this.n)
-    this.x = Float64Array.from(start, (value, j) => Math.min(this.upper(j), Math.max(this.lower(j), value)))
-    this.residuals = new Float64Array(this.m)
-    this.jacobian = new Float64Array(this.m * this.n)
-    this.trial = { residuals: new Float64Array(this.m), jacobian: new Float64Array(this.m * this.n) }
+    const { m, n } = this, rows = Math.max(m, n)
+    this.scales = new Float64Array(n)
+    this.low = Float64Array.from({ length: n }, (_, j) => problem.lower?.[j] ?? -Infinity)
+    this.high = Float64Array.from({ length: n }, (_, j) => problem.upper?.[j] ?? Infinity)
+    this.x = new Float64Array(n)
+    for (let j = 0; j < n; j++) this.x[j] = this.within(j, start[j]!)
+    this.residuals = new Float64Array(m)
+    this.jacobian = new Float64Array(m * n)
+    this.trial = { x: new Float64Array(n), residuals: new Float64Array(m), jacobian: new Float64Array(m * n) }
+    this.matrix = new Float64Array(rows * n)
+    this.right = new Float64Array(rows)
+    this.linear = { triangle: this.matrix, right: this.right, gradient: new Float64Array(n) }
+    this.damped = new Float64Array(2 * n * n)
+    this.rest = new Float64Array(2 * n)
   }
 
-  private lower(j: number): number {
-    return this.problem.lower?.[j] ?? -Infinity
-  }
-
-  private upper(j: number): number {
-    return this.problem.upper?.[j] ?? Infinity
+  private within(j: number, value: number): number {
+    return Math.min(this.high[j]!, Math.max(this.low[j]!, value))
   }
 
   atBound(j: number): boolean {
-    return this.x[j]! <= this.lower(j) || this.x[j]! >= this.upper(j)
+    return this.x[j]! <= this.low[j]! || this.x[j]! >= this.high[j]!
   }
 
   begin(): boolean {
@@ -98,28 +111,30 @@ class Search {
   }
 
   linearise(): Linear {
-    const { m, n } = this, rows = Math.max(m, n)
-    const matrix = new Float64Array(rows * n), right = new Float64Array(rows), gradient = new Float64Array(n)
-    matrix.set(this.jacobian)
-    right.set(this.residuals)
+    const { m, n, scales, jacobian, residuals, matrix, right } = this, { gradient } = this.linear
+    matrix.fill(0)
+    matrix.set(jacobian)
+    right.fill(0)
+    right.set(residuals)
     for (let j = 0; j < n; j++) {
-      let length = 0
-      for (let i = 0; i < m; i++) {
-        const value = this.jacobian[i * n + j]!
+      let length = 0, slope = 0
+      for (let i = 0, at = j; i < m; i++, at += n) {
+        const value = jacobian[at]!
         length += value * value
-        gradient[j]! += value * this.residuals[i]!
+        slope += value * residuals[i]!
       }
-      this.scales[j] = Math.max(0.95 * this.scales[j]!, Math.sqrt(length))
+      gradient[j] = slope
+      scales[j] = Math.max(0.95 * scales[j]!, Math.sqrt(length))
     }
-    triangularise(matrix, right, rows, n)
-    return { triangle: matrix.subarray(0, n * n), right: right.subarray(0, n), gradient }
+    triangularise(matrix, right, right.length, n)
+    return this.linear
   }
 
   /** The damped step inside the bounds: what would cross a bound is put on it and the others are solved again. */
   step({ triangle, right, gradient }: Linear, damping: number): Float64Array {
     const { n } = this, step = new Float64Array(n), free: number[] = []
     for (let j = 0; j < n; j++) {
-      const outward = (this.x[j]! <= this.lower(j) && gradient[j]! >= 0) || (this.x[j]! >= this.upper(j) && gradient[j]! <= 0)
+      const outward = (this.x[j]! <= this.low[j]! && gradient[j]! >= 0) || (this.x[j]! >= this.high[j]! && gradient[j]! <= 0)
       if (!outward && this.scales[j]! > 0) free.push(j)
     }
     while (free.length > 0) {
@@ -127,16 +142,14 @@ class Search {
       let crossed = false
       for (let k = free.length - 1; k >= 0; k--) {
         const j = free[k]!, wanted = solved[k]!, limit = this.problem.stepLimit?.[j] ?? Infinity
-        const low = Math.max(this.lower(j) - this.x[j]!, -limit), high = Math.min(this.upper(j) - this.x[j]!, limit)
+        const low = Math.max(this.low[j]! - this.x[j]!, -limit), high = Math.min(this.high[j]! - this.x[j]!, limit)
         if (wanted >= low && wanted <= high) continue
         step[j] = wanted < low ? low : high
         free.splice(k, 1)
         crossed = true
       }
       if (crossed) continue
-      free.forEach((j, k) => {
-        step[j] = solved[k]!
-      })
+      for (let k = 0; k < free.length; k++) step[free[k]!] = solved[k]!
       break
     }
     return step
@@ -144,22 +157,19 @@ class Search {
 
   /** Least squares of [R; √λ·D]·p = −[Qᵀr; 0] over the free parameters, the others being held at their step. */
   private solve(triangle: Float64Array, right: Float64Array, held: Float64Array, free: number[], damping: number): Float64Array {
-    const { n } = this, columns = free.length, rows = n + columns
-    const matrix = new Float64Array(rows * columns), rest = new Float64Array(rows)
+    const { n, damped, rest, scales } = this, columns = free.length, root = Math.sqrt(damping), anyHeld = columns < n
     for (let i = 0; i < n; i++) {
       let value = -right[i]!
-      for (let j = i; j < n; j++) if (held[j] !== 0 && !free.includes(j)) value -= triangle[i * n + j]! * held[j]!
+      if (anyHeld) for (let j = i; j < n; j++) if (held[j] !== 0 && !free.includes(j)) value -= triangle[i * n + j]! * held[j]!
       rest[i] = value
-      free.forEach((j, k) => {
-        matrix[i * columns + k] = triangle[i * n + j]!
-      })
+      for (let k = 0; k < columns; k++) damped[i * columns + k] = triangle[i * n + free[k]!]!
     }
-    const root = Math.sqrt(damping)
-    free.forEach((j, k) => {
-      matrix[(n + k) * columns + k] = root * this.scales[j]!
-    })
-    triangularise(matrix, rest, rows, columns)
-    return backSubstitute(matrix, rest, columns)
+    for (let row = 0; row < columns; row++) {
+      rest[n + row] = 0
+      for (let k = 0; k < columns; k++) damped[(n + row) * columns + k] = row === k ? root * scales[free[k]!]! : 0
+    }
+    triangularise(damped, rest, n + columns, columns)
+    return backSubstitute(damped, rest, columns)
   }
 
   /** Decrease of χ² that the linear model foresees. */
@@ -186,14 +196,17 @@ class Search {
 
   /** Goes the step where it lowers χ²; returns the decrease, or null where it does not. */
   go(step: Float64Array): number | null {
-    const at = this.x.map((value, j) => Math.min(this.upper(j), Math.max(this.lower(j), value + step[j]!)))
-    const { residuals, jacobian } = this.trial
-    if (!this.problem.evaluate(at, residuals, jacobian)) return null
+    const { x, residuals, jacobian } = this.trial
+    for (let j = 0; j < x.length; j++) x[j] = this.within(j, this.x[j]! + step[j]!)
+    if (!this.problem.evaluate(x, residuals, jacobian)) return null
     const chi2 = squared(residuals)
     if (!Number.isFinite(chi2) || chi2 > this.chi2) return null
     const decrease = this.chi2 - chi2
-    this.trial = { residuals: this.residuals, jacobian: this.jacobian }
-    Object.assign(this, { x: at, residuals, jacobian, chi2 })
+    this.trial = { x: this.x, residuals: this.residuals, jacobian: this.jacobian }
+    this.x = x
+    this.residuals = residuals
+    this.jacobian = jacobian
+    this.chi2 = chi2
     return decrease
   }
 }
