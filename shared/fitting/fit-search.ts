@@ -97,7 +97,10 @@ export interface FoundFit extends LeastSquaresFit { problem: LeastSquaresProblem
 export function searchFit(design: FitDesign, more: readonly ArrayLike<number>[] = []): FoundFit {
   const problem = curveProblem(design.curves, design.slots)
   const best = bestOf(problem, [...SHAPES[design.model].map(shape => startOf(design, shape)), ...more])
-  return { ...polish(problem, inOrder(design, best.parameters), best.converged), problem }
+  const polished = polish(problem, inOrder(design, best.parameters), best.converged), sorted = inOrder(design, polished.parameters)
+  // Time constants that all but coincide may pass each other in the last steps.
+  const passed = sorted.some((value, j) => value !== polished.parameters[j])
+  return { ...(passed ? polish(problem, sorted, polished.converged) : polished), problem }
 }
 
 /**
