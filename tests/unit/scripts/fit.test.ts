@@ -8,7 +8,7 @@ import { fileWith, run } from './support'
 // A busy machine takes seconds to start a process.
 vi.setConfig({ testTimeout: 180_000 })
 
-const demo = (name: string) => fileURLToPath(new URL(`../../fixtures/demo/${name}`, import.meta.url))
+const demo = (name: string) => fileURLToPath(new URL(`../../../scripts/demo-data/${name}`, import.meta.url))
 const documentOf = async (options: string[]) => {
   const { code, out, problems } = await run('fit', [...options, '--json'])
   expect([code, problems.includes('Fault')]).toEqual([0, false])
@@ -47,6 +47,9 @@ describe('fit --json', () => {
     expect(cells.cells.two!.parameters.map(one => one.name)).toEqual(['depletion', 'fastShare', 'tauFastS', 'tauSlowS'])
     expect(cells.warnings.map(one => one.code)).toContain('same-cells')
     expect(messy).toMatchObject({ points: 11, weights: 'sem', dof: 7 })
+    const byCells = await documentOf([demo('cells.csv'), '--model', 'two', '--condition', 'control', '--weights', 'cells'])
+    expect(byCells).toMatchObject({ weights: 'cells', dof: 7, betweenCells: { dof: 8 } })
+    expect(byCells.warnings.map(one => one.code)).not.toContain('same-cells')
   })
 })
 
