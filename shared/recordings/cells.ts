@@ -5,6 +5,8 @@ import type { Decimal } from './reading'
 /** Spellings that stand for no value (common practice, no source). */
 const MISSING = new Set(['', 'na', 'n/a', 'n.a.', 'nan', 'null', '-', '--', '---', '\u2012', '\u2013', '\u2014', '\u2212', '.', '?',
   '#n/a', '#nv', '#div/0!', '#value!', '#wert!', '#ref!', '#bezug!', '#num!', '#zahl!', '#null!', '#name?'])
+/** A longer cell is text: nothing is searched for in it [characters]. */
+const LONGEST = 80
 const MONTHS = ['jan', 'feb', 'mar|mär|mrz', 'apr', 'may|mai', 'jun', 'jul', 'aug', 'sep', 'oct|okt', 'nov', 'dec|dez']
 const MONTH = MONTHS.join('|')
 /** The plain forms of nearly all cells, judged without the parser: no mark, or one with digits on both sides. */
@@ -41,6 +43,7 @@ export type MarkEvidence = '.' | ',' | 'both' | 'none' | 'no-number'
 
 /** Which decimal marks a cell allows. */
 export function markEvidence(cell: string): MarkEvidence {
+  if (cell.length > LONGEST) return 'no-number'
   const plain = PLAIN.exec(cell)
   if (plain) return plain[2] === undefined ? 'none' : plain[3]!.length === 3 && /^[1-9]\d{0,2}$/.test(plain[1]!) ? 'both' : plain[2] as Decimal
   // A unit behind the number says nothing of its mark.
@@ -79,6 +82,7 @@ function roundingOf(cell: string, decimal: Decimal): number {
 export function readCell(cell: string, decimal: Decimal, settled: boolean, unit: UnitSymbol, into: UnitSymbol = unit): CellRead {
   const plain = plainDecimal(cell, decimal)
   if (plain !== null) return { kind: 'ok', value: tidied(convert(plain, unit, into)), rounding: roundingOf(cell, decimal) * UNITS[unit].inBase / UNITS[into].inBase, ownUnit: false }
+  if (cell.trim().length > LONGEST) return { kind: 'refused', sentence: `“${cell.trim().slice(0, 24)}…” is not a number.` }
   const spelling = missingSpelling(cell)
   if (spelling !== null) return { kind: 'missing', spelling }
   const date = spreadsheetDate(cell)

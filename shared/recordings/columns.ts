@@ -17,10 +17,13 @@ const one = (index: number, meaning: Meaning) => ({ label: MEANING_NAMES[meaning
 const calling = (column: ColumnRead) => column.name === '' ? `Column ${column.letter}` : `Column ${column.letter}, “${column.name}”,`
 
 interface Body { cells: string[], numbers: number, whole: boolean }
+/** Rows from which it is judged whether a column holds numbers [count]. */
+const JUDGED = 500
 /** What a column holds in the data rows. */
 function bodyOf(rows: FileRow[], index: number): Body {
   const cells = rows.map(row => row.cells[index] ?? '').filter(cell => missingSpelling(cell) === null)
-  return { cells, numbers: cells.filter(numberLike).length, whole: cells.every(cell => /^\s*\d+\s*$/.test(cell)) }
+  const judged = cells.slice(0, JUDGED)
+  return { cells, numbers: judged.filter(numberLike).length, whole: judged.every(cell => /^\s*\d+\s*$/.test(cell)) }
 }
 
 function firstGuess(index: number, name: string, unitCell: string, body: Body): ColumnRead & { bar: boolean } {
@@ -46,7 +49,7 @@ function settleTime(columns: ColumnRead[]): void {
 /** Without names: the first numbers are perhaps interval, ratio, SEM and n, in this order. */
 function suggestByPlace(columns: ColumnRead[], bodies: Body[]): Map<number, Meaning> {
   const order: Meaning[] = ['interval', 'ratio', 'sem', 'n'], suggested = new Map<number, Meaning>()
-  const numeric = columns.filter(column => column.filled > 0 && bodies[column.index]!.numbers > 0.5 * column.filled)
+  const numeric = columns.filter(column => column.filled > 0 && bodies[column.index]!.numbers > 0.5 * Math.min(column.filled, JUDGED))
   numeric.slice(0, 4).forEach((column, i) => {
     const whole = bodies[column.index]!.whole
     suggested.set(column.index, i === 2 && whole ? 'n' : order[i]!)

@@ -79,9 +79,9 @@ function grouped(lines: NamedLine[], choices: ReadingChoices, named: { protocol:
 /** One name for each group: a condition under two protocols bears the protocol too. */
 function distinct(groups: Group[]): Group[] {
   const times = (condition: string) => groups.filter(group => group.condition === condition).length
-  const tell = (group: Group) => {
-    const twins = groups.filter(other => other.condition === group.condition)
-    return new Set(twins.map(twin => twin.protocol)).size > 1 ? group.protocol : group.manipulation
+  const tell = ({ condition, protocol, manipulation }: Group) => {
+    const twins = groups.filter(other => other.condition === condition), same = twins.filter(twin => twin.protocol === protocol).length
+    return same === twins.length ? manipulation : same > 1 ? `${protocol}, ${manipulation}` : protocol
   }
   return groups.map(group => times(group.condition) > 1 ? { ...group, condition: `${group.condition}, ${tell(group)}`.slice(0, 120) } : group)
 }

@@ -24,6 +24,7 @@ const LOOKED_AT = 200
 
 const filled = (row: FileRow) => row.cells.filter(cell => cell.trim() !== '')
 const numbersIn = (row: FileRow) => row.cells.filter(cell => missingSpelling(cell) === null && numberLike(cell)).length
+const holdsNumber = (row: FileRow) => row.cells.some(cell => missingSpelling(cell) === null && numberLike(cell))
 const folded = (row: FileRow) => row.cells.map(cell => cell.trim().toLowerCase()).join('\n').trimEnd()
 const commented = (row: FileRow) => /^(?:#|\/\/)/.test(row.cells[0]!.trim()) && missingSpelling(row.cells[0]!) === null
 
@@ -84,7 +85,7 @@ function kindOf(row: FileRow, i: number, { header, unit, first, headerText, unit
   if (i < first) return 'title'
   const text = folded(row)
   if (text === headerText || text === unitText) return 'again'
-  const holds = numbersIn(row) > 0 || foreignData(row) || filled(row).some(cell => missingSpelling(cell) !== null)
+  const holds = holdsNumber(row) || foreignData(row) || filled(row).some(cell => missingSpelling(cell) !== null)
   return !holds || commented(row) ? 'remark' : 'data'
 }
 

@@ -9,6 +9,9 @@ export interface NameRead {
   unit: string
 }
 
+/** Names and units are shorter; what is longer is text [characters]. */
+const LONGEST = 80
+
 /** Spellings of units in recordings, folded; what each stands for. */
 const UNIT_WORDS: Record<string, string> = {
   's': 's', 'sec': 's', 'secs': 's', 'second': 's', 'seconds': 's', 'sekunden': 's',
@@ -25,6 +28,7 @@ const fold = (text: string) => text.normalize('NFKC').toLowerCase().replace(/[\u
  * @returns the unit as it is written in the product, or null where the cell is no unit
  */
 export function unitWord(cell: string): string | null {
+  if (cell.trim().length > LONGEST) return null
   const bare = fold(cell).replace(/^[[(]\s*(.*?)\s*[\])]$/, '$1').trim()
   return Object.hasOwn(UNIT_WORDS, bare) ? UNIT_WORDS[bare]! : null
 }
@@ -73,7 +77,7 @@ const NAMES: [RegExp, Meaning | 'bar'][] = [
  * @returns meaning (null: none known here), whether it is an unlabelled bar, and the unit in the name
  */
 export function readName(name: string): NameRead {
-  const { bare, unit } = apart(name)
+  const { bare, unit } = apart(name.trim().slice(0, LONGEST))
   const plain = bare.replace(/±/g, ' ± ').replace(/[._\-()[\]:]+/g, ' ').replace(/\s+/g, ' ').trim()
   const found = NAMES.find(([pattern]) => pattern.test(plain))?.[1] ?? null
   return found === 'bar' ? { meaning: null, bar: true, unit } : { meaning: found ?? (unit === '%' && /^(?:control|first)?$/.test(plain) ? 'ratio' : null), bar: false, unit }

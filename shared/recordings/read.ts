@@ -9,9 +9,10 @@ import { frameOf, type Frame } from './frame'
 import { readLines } from './lines'
 import { shapeOf } from './mapping'
 import { alikeWarning, findRepeats, unsortedWarning } from './repeats'
-import type { Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
+import type { RowKind } from './layout'
+import type { ColumnRead, Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
 import { runDownWarning } from './rundown'
-import { MOST_CELLS, lineEndsOf, splitRows, type SplitText } from './rows'
+import { MOST_CELLS, lineEndsOf, shapelessness, splitRows, withFeeds, type SplitText } from './rows'
 import { findSeparator } from './separator'
 import { readTrace } from './trace-reading'
 import type { Trace } from './trace-samples'
@@ -33,8 +34,9 @@ function encodingGuess(decoded: Decoded): { guesses: Guess[], questions: Questio
   return { guesses: [guess], questions: decoded.sure === 'asked' ? [{ id: 'encoding', must: true, lines, sentence: decoded.sentence, options: ENCODING_OPTIONS, suggested: null }] : [] }
 }
 
-function refusals(split: SplitText, frame: Frame): FieldProblem[] {
+function refusals(split: SplitText, frame: Frame, many?: number): FieldProblem[] {
   const refuse = (message: string): FieldProblem => ({ path: 'file', message })
+  if (many !== undefined) return [refuse(`This file has ${many} lines; at most ${RECORDING_LIMITS.points} rows are kept in one recording.`)]
   const data = frame.layout.kinds.filter(kind => kind === 'data').length
   const wide = split.rows.find(row => row.cells.length > MOST_CELLS)
   if (split.unclosed) return [refuse(split.unclosed.sentence)]
@@ -58,34 +60,38 @@ function sentenceOf(kind: Reading['kind'], points: number, lines: LineRead[], fi
   return aside === 0 ? `${read}; none of ${fileLines} lines set aside.` : `${read}; ${aside} of ${fileLines} lines set aside, each with its reason.`
 }
 
-function emptyReading(kind: Reading['kind'], split: SplitText, frame: Frame): Omit<Reading, 'guesses' | 'questions' | 'problems'> {
-  const lines = split.rows.slice(0, TRACE_LINES).map(({ line, cells }, i): LineRead => ({ line, cells, kind: frame.layout.kinds[i] === 'data' ? 'point' : frame.layout.kinds[i] as LineRead['kind'], remark: '', kept: null }))
-  return { kind, fileLines: split.lines, columns: frame.columns, lines, warnings: [], missing: {}, setAside: [], conditions: [], trace: null, counts: [], sentence: '', shape: shapeOf(frame.columns), ready: false }
+function emptyReading(kind: Reading['kind'], split: SplitText, columns: ColumnRead[], kinds: RowKind[] = []): Omit<Reading, 'guesses' | 'questions' | 'problems'> {
+  const lines = split.rows.slice(0, TRACE_LINES).map(({ line, cells }, i): LineRead => ({ line, cells: cells.slice(0, MOST_CELLS), kind: kinds[i] === 'data' ? 'point' : kinds[i] ?? 'point', remark: '', kept: null }))
+  return { kind, fileLines: split.lines, columns, lines, warnings: [], missing: {}, setAside: [], conditions: [], trace: null, counts: [], sentence: '', shape: shapeOf(columns), ready: false }
 }
 
 /** Text, frame and rows: of a large trace only the first rows, of all else every one. */
-function split(text: string, separator: Separator, choices: ReadingChoices): { split: SplitText, frame: Frame } {
-  const cut = text.length > HEAD_CHARACTERS ? text.lastIndexOf('\n', HEAD_CHARACTERS) + 1 : 0
+function split(text: string, separator: Separator, choices: ReadingChoices): { split: SplitText, frame: Frame, many?: number } {
+  const most = 2 * RECORDING_LIMITS.points, cut = text.length > HEAD_CHARACTERS ? text.lastIndexOf('\n', HEAD_CHARACTERS) + 1 : 0
   const head = splitRows(cut > 0 ? text.slice(0, cut) : text, separator), frame = frameOf(head.rows.slice(0, FRAME_ROWS), separator, choices)
   if (frame.kind === 'trace' || (cut === 0 && head.rows.length <= FRAME_ROWS)) return { split: head, frame }
-  const whole = cut > 0 ? splitRows(text, separator) : head
-  return { split: whole, frame: frameOf(whole.rows, separator, choices) }
+  const whole = splitRows(text, separator, 1, most)
+  // Far beyond what is kept: refused without looking at every row.
+  return whole.rows.length >= most ? { split: whole, frame, many: whole.lines } : { split: whole, frame: frameOf(whole.rows, separator, choices) }
 }
 
 /**
  * Reads the text of a file, and gives the samples of a trace beside the reading.
- * @param text - the whole text
+ * @param original - the whole text, any line ends
  * @param choices - what a person chose; empty at first
  * @param decoded - how the bytes became this text, where there were bytes
  * @returns the reading, and the trace to draw [s, fF, mV]; null where the file is a table
  */
-export function readWithTrace(text: string, choices: ReadingChoices = {}, decoded?: Decoded): { reading: Reading, trace: Trace | null } {
-  const { separator, guess: separatorGuess } = findSeparator(text, choices.separator), { split: rows, frame } = split(text, separator, choices)
+export function readWithTrace(original: string, choices: ReadingChoices = {}, decoded?: Decoded): { reading: Reading, trace: Trace | null } {
+  const text = withFeeds(original)
+  const shapeless = shapelessness(text)
+  if (shapeless) return { reading: { ...emptyReading('summary', { rows: [], lines: 0, unclosed: null }, []), guesses: [], questions: [], problems: [{ path: 'file', message: shapeless }], sentence: shapeless }, trace: null }
+  const { separator, guess: separatorGuess } = findSeparator(text, choices.separator), { split: rows, frame, many } = split(text, separator, choices)
   const encoding = decoded ? encodingGuess(decoded) : { guesses: [], questions: [] }
-  const ends: Guess = { id: 'line-ends', label: 'Line ends', shown: lineEndsOf(text), sure: 'certain', sentence: 'As they stand in the file.', options: [] }
+  const ends: Guess = { id: 'line-ends', label: 'Line ends', shown: lineEndsOf(original), sure: 'certain', sentence: 'As they stand in the file.', options: [] }
   const asked: Question[] = separatorGuess.sure === 'asked' ? [{ id: 'separator', must: true, lines: [], sentence: `${separatorGuess.sentence} Which is meant?`, options: separatorGuess.options, suggested: null }] : []
-  const problems = refusals(rows, frame), questions = [...encoding.questions, ...asked, ...frame.questions]
-  const blank: Reading = { ...emptyReading(frame.kind, rows, frame), guesses: [...encoding.guesses, separatorGuess, ends, ...frame.guesses], questions, problems, sentence: problems[0]?.message ?? '' }
+  const problems = refusals(rows, frame, many), questions = [...encoding.questions, ...asked, ...frame.questions]
+  const blank: Reading = { ...emptyReading(frame.kind, rows, frame.columns, frame.layout.kinds), guesses: [...encoding.guesses, separatorGuess, ends, ...frame.guesses], questions, problems, sentence: problems[0]?.message ?? '' }
   if (problems.length > 0) return { reading: blank, trace: null }
   return frame.kind === 'trace' ? readTrace(text, frame, separator, choices, blank) : { reading: readTable(rows, frame, separator, choices, blank), trace: null }
 }

@@ -14,8 +14,23 @@ export interface SplitText {
   /** Line of a quote that is never closed, with its sentence; null where all close. */
   unclosed: { line: number, sentence: string } | null
 }
-/** A row with more cells is no table of recordings [count]. */
+/** A row with more cells is no table of recordings [count]; nor is a longer line [characters], nor a file with more lines [count]. */
 export const MOST_CELLS = 500
+export const LONGEST_LINE = 1_000_000
+export const MOST_LINES = 3_000_000
+
+/** Why a text is not even split: a line or a count of lines that no recording has. Text with line feeds only. */
+export function shapelessness(text: string): string | null {
+  let lines = 0
+  for (let from = 0; from <= text.length;) {
+    const at = text.indexOf('\n', from), end = at < 0 ? text.length : at
+    lines++
+    if (end - from > LONGEST_LINE) return `Line ${lines} is longer than ${LONGEST_LINE} characters; this is no table.`
+    if (lines > MOST_LINES) return `This file has more than ${MOST_LINES} lines.`
+    from = end + 1
+  }
+  return null
+}
 
 /** One kind of line break; which ones were there is told by `lineEndsOf`. */
 export const withFeeds = (text: string): string => text.includes('\r') ? text.replace(/\r\n?/g, '\n') : text
@@ -38,14 +53,15 @@ function countFeeds(text: string, from: number, to: number): number {
  * @param text - text of a file, any line ends
  * @param separator - what stands between two cells
  * @param firstLine - line of the file on which the text begins [count from 1]
+ * @param mostRows - rows beyond are not split [count]
  * @returns rows in file order; an unclosed quote is told with the line on which it opens
  */
-export function splitRows(text: string, separator: Separator, firstLine = 1): SplitText {
+export function splitRows(text: string, separator: Separator, firstLine = 1, mostRows = Infinity): SplitText {
   const tidy = withFeeds(text), body = tidy.endsWith('\n') ? tidy.slice(0, -1) : tidy
   const lines = firstLine + countFeeds(body, 0, body.length)
   // The library sees no row in an empty text; a lone break still ends one.
   const rows: FileRow[] = body === '' && tidy !== '' ? [{ line: firstLine, cells: [''] }] : []
-  const plain = { delimiter: separator, newline: '\n' as const, skipEmptyLines: false }
+  const plain = { delimiter: separator, newline: '\n' as const, skipEmptyLines: false, ...Number.isFinite(mostRows) ? { preview: mostRows } : {} }
   if (!body.includes('"')) {
     // Without quotes each line is a row: no need to follow the library row by row.
     const cut = Papa.parse<string[]>(body, plain).data

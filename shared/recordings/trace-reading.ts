@@ -36,7 +36,8 @@ function stimuliQuestion({ stimuli, sentence }: FoundStimuli, choices: ReadingCh
 function settingsOf(found: FoundStimuli, choices: ReadingChoices): TraceSettings | null {
   const { stimuli: typed, cell: _, ...windows } = choices.trace ?? {}
   const [first, second] = found.stimuli, pair = typed ?? (found.stimuli.length === 2 ? [first!, second!] as [Stimulus, Stimulus] : null)
-  return pair && { ...DEFAULT_WINDOWS, ...windows, stimuli: pair }
+  const given = Object.fromEntries(Object.entries(windows).filter(([, value]) => value !== undefined))
+  return pair && { ...DEFAULT_WINDOWS, ...given, stimuli: pair }
 }
 
 function conditionOf(point: CellPoint, choices: ReadingChoices): ConditionData {

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest'
 import { meansOfCells } from '../../../shared/recordings/conditions'
 import { mappingOf } from '../../../shared/recordings/mapping'
 import { readingRecord } from '../../../shared/recordings/read'
-import { readFixture } from './support'
+import { read, readFixture } from './support'
 
 const RATIOS = [0.150, 0.181, 0.243, 0.332, 0.459, 0.594, 0.685, 0.745, 0.799, 0.890, 0.945]
 const SEMS = [0.008, 0.019, 0.010, 0.015, 0.013, 0.011, 0.012, 0.011, 0.013, 0.012, 0.009]
@@ -66,6 +66,12 @@ describe('control_messy.csv', () => {
     expect(again.shape).toBe(reading.shape)
     expect(again.shape).toMatch(/^[0-9a-f]{64}$/)
     expect(again.guesses.filter(guess => guess.sure === 'guess' || guess.sure === 'asked')).toEqual([])
+  })
+
+  it('offers that mapping to the next night\'s file: other titles, other rows, the same header', () => {
+    const next = read(['Kestrel Point, export;;;;', 'Interval;Recovery;SEM;n;', 's;%;%;;', '0,05;14,2;0,9;7;', '51,2;93,8;1,0;7;'].join('\n'))
+    expect(next.shape).toBe(reading.shape)
+    expect(read(['Interval;Recovery;SD;n;', 's;%;%;;', '0,05;14,2;0,9;7;', '51,2;93,8;1,0;7;'].join('\n')).shape).not.toBe(reading.shape)
   })
 
   it('is plain JSON, and keeps its decisions', () => {

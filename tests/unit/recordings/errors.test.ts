@@ -71,6 +71,8 @@ describe('conditions', () => {
   it('tells one condition under two protocols apart', () => {
     const reading = read(table(['a,long,50,0.15', 'a,short,50,0.6'], 'condition,protocol,interval_ms,ratio'))
     expect(reading.conditions.map(one => one.condition)).toEqual(['a, long', 'a, short'])
+    const three = read(table(['a,long,none,50,0.15', 'a,short,none,50,0.6', 'a,short,x,50,0.6'], 'condition,protocol,manipulation,interval_ms,ratio'))
+    expect(three.conditions.map(one => one.condition)).toEqual(['a, long', 'a, short, none', 'a, short, x'])
   })
   it('warns of names that differ by capitals or blanks only', () => {
     expect(read(table(['Control,50,0.15', 'control ,100,0.2'], 'condition,interval_ms,ratio')).warnings.find(one => one.id === 'alike')!.sentence).toContain('“Control” and “control”')

@@ -37,6 +37,10 @@ describe('separators and rows', () => {
   it('refuses more rows than are kept, and rows that are no table', () => {
     const many = read(table(Array.from({ length: 20_001 }, (_, i) => `${i + 1},0.5,0.01,9`)))
     expect(many.problems[0]!.message).toBe('This table has 20001 rows; at most 20000 are kept in one recording.')
+    expect(read(table(Array.from({ length: 60_000 }, (_, i) => `${i + 1},0.5,0.01,9`))).problems[0]!.message).toBe('This file has 60001 lines; at most 20000 rows are kept in one recording.')
+    expect(read(table([...PLAIN, ';'.repeat(2_000_000)])).problems[0]!.message).toBe('Line 6 is longer than 1000000 characters; this is no table.')
+    expect(read(table([...PLAIN, '\n'.repeat(3_000_001)])).problems[0]!.message).toBe('This file has more than 3000000 lines.')
+    expect(read(table([...PLAIN, `800,${' '.repeat(500_000)}x,0.01,9`])).conditions[0]!.points).toHaveLength(4)
     expect(read(table([Array.from({ length: 501 }, () => '1').join(',')])).problems[0]!.message).toContain('at most 500')
   })
 })

@@ -3,7 +3,7 @@ import { readFileSync } from 'node:fs'
 import type { ReadingChoices } from '../../../shared/recordings/choices'
 import { readBytes, readRecording } from '../../../shared/recordings/read'
 
-export const fixture = (name: string) => new Uint8Array(readFileSync(new URL(`../../fixtures/demo/${name}`, import.meta.url)))
+export const fixture = (name: string) => new Uint8Array(readFileSync(new URL(`../../../scripts/demo-data/${name}`, import.meta.url)))
 export function readFixture(name: string, choices: ReadingChoices = {}) {
   const read = readBytes(fixture(name), choices)
   if (!read.ok) throw new Error(read.problem.message)
