@@ -60,7 +60,7 @@ export type ReadingChoices = z.output<typeof ReadingChoicesSchema>
 export function parseChoices(input: unknown): { ok: true, choices: ReadingChoices } | { ok: false, problems: FieldProblem[] } {
   const parsed = ReadingChoicesSchema.safeParse(input)
   if (parsed.success) return { ok: true, choices: parsed.data }
-  return { ok: false, problems: fieldProblems(parsed.error.issues).map(one => ({ ...one, path: one.path ? `choices.${one.path}` : 'choices' })) }
+  return { ok: false, problems: fieldProblems(parsed.error.issues).map(one => ({ message: one.message === 'Invalid key in record' ? 'A column counts from 0 and a line from 1; this is neither.' : one.message, path: one.path ? `choices.${one.path}` : 'choices' })) }
 }
 
 /**
