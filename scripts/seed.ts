@@ -4,6 +4,7 @@
  */
 import { and, eq } from 'drizzle-orm'
 import { DEMO_PASS_PHRASE, DEMO_PEOPLE, DEMO_BENCH, hashPassPhrase, type DemoPerson } from './demo'
+import { seedRecordingsAndWeighUps } from './demo-recordings'
 import { DEMO_STORY, type StoryRun, type StoryScenario } from './demo-story'
 import { examineRun } from '../server/jobs/examine'
 import { openDatabase, openPool, type Database } from '../server/db/client'
@@ -71,8 +72,9 @@ async function seedAll(db: Database): Promise<string> {
   const written = new Map<StoryScenario['key'], string>()
   for (const scenario of DEMO_STORY.scenarios) written.set(scenario.key, await seedScenario(db, ids, benchId, scenario))
   for (const run of DEMO_STORY.runs) await seedRun(db, ids, benchId, written.get(run.scenario)!, run)
+  const measured = await seedRecordingsAndWeighUps(db, readerOf(ids, benchId, 'tomasz'))
   await recordEvent(db, { kind: 'demo-seeded', actorId: null, benchId })
-  return `Wrote the invented ${DEMO_BENCH}: ${DEMO_STORY.scenarios.length} scenarios, ${DEMO_STORY.runs.length} runs.`
+  return `Wrote the invented ${DEMO_BENCH}: ${DEMO_STORY.scenarios.length} scenarios, ${DEMO_STORY.runs.length} runs, ${measured}.`
 }
 
 const address = process.env.NUXT_DATABASE_URL ?? process.env.DATABASE_URL

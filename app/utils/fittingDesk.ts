@@ -4,11 +4,29 @@ import type { BothFits } from '#shared/fitting/fit-both'
 import { fitBySettings, type FitSettings } from '#shared/fitting/kept-fit'
 import type { FitRefusal } from '#shared/fitting/point-errors'
 import type { ExponentialModel } from '#shared/fitting/recovery-model'
+import { weighUpSteps, type WeighProgress } from '#shared/fitting/weighing/weigh-up'
 import type { ConditionData } from '#shared/recordings/types'
+import type { WeighSettings, WeighUp } from '#shared/schemas/weigh-up'
+
+const REPORT_EVERY_MS = 100
 
 export class FittingDesk {
   both(data: ConditionData, settings: FitSettings): BothFits | FitRefusal {
     return fitBySettings(data, settings)
+  }
+
+  /** Stops where the report answers false; then the answer is null. */
+  async weigh(conditions: ConditionData[], settings: WeighSettings, report: (progress: WeighProgress) => boolean | Promise<boolean>): Promise<WeighUp | FitRefusal | null> {
+    const steps = weighUpSteps({ conditions, settings })
+    let heard = 0
+    for (let step = steps.next(); ; step = steps.next()) {
+      if (step.done) return step.value
+      // A message for each of hundreds of resamples would cost more than it says.
+      const now = performance.now()
+      if (now - heard < REPORT_EVERY_MS) continue
+      heard = now
+      if (!await report(step.value)) return null
+    }
   }
 
   cells(data: ConditionData, model: ExponentialModel, freePlateau: boolean): CellsFit | FitRefusal {

@@ -9,6 +9,7 @@ import { MemberEditSchema, BenchEditSchema } from '../../shared/schemas/api/benc
 import { RegisterSchema, SignInSchema } from '../../shared/schemas/api/account'
 import { MappingQuerySchema, PointsAsideSchema, RecordingCreateSchema, RecordingEditSchema, RecordingListSchema, UploadQuerySchema } from '../../shared/schemas/api/recording'
 import { RunListSchema, RunSaveSchema } from '../../shared/schemas/api/run'
+import { WeighAgainSchema, WeighUpCreateSchema, WeighUpListSchema } from '../../shared/schemas/api/weigh-up'
 import { ScenarioCreateSchema, ScenarioDuplicateSchema, ScenarioEditSchema, ScenarioListSchema, ScenarioTagsSchema } from '../../shared/schemas/api/scenario'
 
 export type RouteMethod = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE'
@@ -37,6 +38,7 @@ const BENCH = '/api/benches/:benchId'
 const SCENARIO = '/api/scenarios/:scenarioId'
 const RUN = '/api/runs/:runId'
 const RECORDING = '/api/recordings/:recordingId'
+const WEIGH_UP = '/api/weigh-ups/:weighUpId'
 
 export const ROUTES: RouteRow[] = [
   row('GET', '/api/health', 'public', 'Ready only when the database answers.', { answer: 'Health' }),
@@ -64,6 +66,8 @@ export const ROUTES: RouteRow[] = [
   row('POST', `${BENCH}/uploads`, 'recording.create', 'Keeps a file byte for byte, sent as application/octet-stream; the same bytes under one name are kept once.', { status: 201, query: UploadQuerySchema, answer: 'Upload' }),
   row('GET', `${BENCH}/recordings`, 'recording.read', 'Recordings of a bench, last change first.', { query: RecordingListSchema, answer: 'Page<RecordingRow>' }),
   row('POST', `${BENCH}/recordings`, 'recording.create', 'Makes recordings from a kept file; the server reads it by the choices given.', { status: 201, body: RecordingCreateSchema, answer: 'RecordingDetail[]' }),
+  row('GET', `${BENCH}/weigh-ups`, 'weigh-up.read', 'Weigh-ups of a bench, last change first.', { query: WeighUpListSchema, answer: 'Page<WeighUpRow>' }),
+  row('POST', `${BENCH}/weigh-ups`, 'weigh-up.create', 'Weighs explanations on recordings and keeps what was found.', { status: 201, body: WeighUpCreateSchema, answer: 'WeighUpDetail' }),
   row('GET', `${BENCH}/mappings`, 'recording.read', 'How a file of this shape was read last.', { query: MappingQuerySchema, answer: 'KeptMapping' }),
 
   row('GET', SCENARIO, 'scenario.read', 'A scenario with its newest document; its revision is the ETag.', { answer: 'ScenarioDetail' }),
@@ -89,6 +93,12 @@ export const ROUTES: RouteRow[] = [
   row('GET', `${RECORDING}/fits`, 'recording.read', 'Kept fits, newest first.', { answer: 'KeptFit[]' }),
   row('POST', `${RECORDING}/fits`, 'recording.edit', 'Fits one and two exponentials and keeps what was found.', { status: 201, body: FitSettingsSchema, answer: 'KeptFit' }),
   row('GET', `${RECORDING}/original`, 'recording.read', 'The file byte for byte as it came.', { answer: 'Binary' }),
+
+  row('GET', WEIGH_UP, 'weigh-up.read', 'A weigh-up, its newest version.', { answer: 'WeighUpDetail' }),
+  row('DELETE', WEIGH_UP, 'weigh-up.delete', 'Puts a weigh-up into the bin.', { status: 204 }),
+  row('POST', `${WEIGH_UP}/restore`, 'weigh-up.delete', 'Takes a weigh-up out of the bin.', { answer: 'WeighUpDetail' }),
+  row('POST', `${WEIGH_UP}/versions`, 'weigh-up.edit', 'Weighs again from the recordings as they stand now.', { status: 201, body: WeighAgainSchema, answer: 'WeighUpDetail' }),
+  row('GET', `${WEIGH_UP}/versions/:revision`, 'weigh-up.read', 'One kept version.', { answer: 'WeighUpDetail' }),
 
   row('GET', `${RUN}/blocks`, 'run.read', 'The integers behind the outcome, block by block.', { answer: 'ReplicateBlock[]' }),
 ]

@@ -6,6 +6,7 @@ import { afterAll, beforeAll, describe, expect, inject, it } from 'vitest'
 import { methodsOf, ROUTES, type RouteRow } from '../../server/utils/routes'
 import { reachOf, type Action, type Role } from '../../shared/permissions'
 import { everyone, makeScenario, openWorld, SMALL, type Everyone, type World } from '../support/bench'
+import { makeRecording, makeWeighUp } from '../support/recordings'
 import { runBody } from '../support/runs'
 import type { Visitor } from '../support/visitor'
 
@@ -35,14 +36,15 @@ describe('the table of routes', () => {
   })
 })
 
-interface Bench { benchId: string, scenarioId: string, runId: string, memberId: string }
+interface Bench { benchId: string, scenarioId: string, runId: string, recordingId: string, weighUpId: string, memberId: string }
 let world: World, people: Everyone, own: Bench, other: Bench
 
 async function fill(lead: Visitor, owner: Visitor, benchId: string, memberId: string): Promise<Bench> {
   const { scenarioId } = await makeScenario(owner, benchId)
   const { body, status } = await lead.post<{ runId: string }>(`/api/scenarios/${scenarioId}/runs`, await runBody(SMALL, { seed: 'matrix' }), { 'idempotency-key': 'matrix' })
   if (status !== 201) throw new Error(`matrix: the run was not saved: ${JSON.stringify(body)}`)
-  return { benchId, scenarioId, runId: body.runId, memberId }
+  const recordingId = await makeRecording(lead, benchId)
+  return { benchId, scenarioId, runId: body.runId, recordingId, weighUpId: await makeWeighUp(lead, benchId, [recordingId]), memberId }
 }
 beforeAll(async () => {
   world = await openWorld(inject('cluster'))
@@ -54,15 +56,17 @@ beforeAll(async () => {
 afterAll(() => world?.end())
 
 const fillIn = (path: string, bench: Bench) => path.replace(':benchId', bench.benchId).replace(':scenarioId', bench.scenarioId).replace(':runId', bench.runId)
+  .replace(':recordingId', bench.recordingId).replace(':weighUpId', bench.weighUpId)
   .replace(':userId', bench.memberId).replace(':revision', '1').replace(':name', 'scenario')
 
+const ITEMS: [string, Action][] = [[':runId', 'run.read'], [':scenarioId', 'scenario.read'], [':recordingId', 'recording.read'], [':weighUpId', 'weigh-up.read']]
 /** What someone in a role must be answered on a thing that the lead made: the table, 404 for what they may not know of, 403 for the rest. */
 function expected(row: RouteRow, role: Role): 'in' | 403 | 404 {
   const action = row.access as Action
-  const item = row.path.includes(':runId') ? 'run.read' : row.path.includes(':scenarioId') ? 'scenario.read' : null
+  const item = ITEMS.find(([parameter]) => row.path.includes(parameter))?.[1] ?? null
   if (item && reachOf(role, item) !== 'all') return 404
   const reach = reachOf(role, action)
-  const makesNew = action === 'scenario.create' || action === 'run.save'
+  const makesNew = ['scenario.create', 'run.save', 'recording.create', 'weigh-up.create'].includes(action)
   return reach === 'all' || (reach !== 'none' && (!item || makesNew)) ? 'in' : 403
 }
 /** A refusal of another kind (missing body, stale revision, rule) shows that the door was passed; nothing is changed by the walk. */
@@ -81,7 +85,7 @@ describe.each(rows.map(row => [nameOf(row), row] as const))('%s', (_, row) => {
     else expect(status).toBe(wanted)
   })
   it('answers a stranger, and everyone on another bench, exactly as an id that never existed', async () => {
-    const nowhere = { benchId: '01890000-0000-7000-8000-000000000000', scenarioId: '01890000-0000-7000-8000-000000000001', runId: '01890000-0000-7000-8000-000000000002', memberId: own.memberId }
+    const nowhere = { benchId: '01890000-0000-7000-8000-000000000000', scenarioId: '01890000-0000-7000-8000-000000000001', runId: '01890000-0000-7000-8000-000000000002', recordingId: '01890000-0000-7000-8000-000000000004', weighUpId: '01890000-0000-7000-8000-000000000005', memberId: own.memberId }
     const never = await people.lead.send(row.method, fillIn(row.path, nowhere), row.body ? {} : undefined)
     expect(never.status).toBe(404)
     const asked: [Visitor, Bench][] = [[people.stranger, own], ...ROLES_WALKED.map((role): [Visitor, Bench] => [people[role], other])]
@@ -90,7 +94,7 @@ describe.each(rows.map(row => [nameOf(row), row] as const))('%s', (_, row) => {
       expect([status, body]).toEqual([404, never.body])
     }
     for (const malformed of ['x', '..%2fx', '00000000-0000-0000-0000-00000000000', '%00']) {
-      const { status, body } = await people.lead.send(row.method, fillIn(row.path, { ...nowhere, benchId: malformed, scenarioId: malformed, runId: malformed }), row.body ? {} : undefined)
+      const { status, body } = await people.lead.send(row.method, fillIn(row.path, { ...nowhere, benchId: malformed, scenarioId: malformed, runId: malformed, recordingId: malformed, weighUpId: malformed }), row.body ? {} : undefined)
       expect([status, body]).toEqual([404, never.body])
     }
   })
@@ -108,6 +112,8 @@ async function passedOnCopy(row: RouteRow, role: Role): Promise<boolean> {
     const { body } = await people.lead.post<{ runId: string }>(`/api/scenarios/${own.scenarioId}/runs`, await runBody(SMALL, { seed: `copy ${role}` }), { 'idempotency-key': `copy-${row.method}-${role}` })
     leaver.runId = body.runId
   }
+  if (row.path.includes(':recordingId')) leaver.recordingId = await makeRecording(people.lead, own.benchId)
+  if (row.path.includes(':weighUpId')) leaver.weighUpId = await makeWeighUp(people.lead, own.benchId, [own.recordingId])
   const { status } = await people[role].send(row.method, fillIn(row.path, leaver), row.body ? {} : undefined, row.ifMatch && { 'if-match': '"1"' })
   // A member that is not there is the one 404 that tells of a passed door.
   return row.path.includes(':userId') ? status === 404 : passed(status)

@@ -94,7 +94,7 @@ describe('fits of single cells', () => {
     expect(refusedOf(fitCells(THREE[0]!, { model: 'one' }))).toBe('no-cells')
   })
   it('the demo’s control (invented; truth: shares 0.6, 0.83 s, 20 s, depletion 0.88) lies inside the intervals over its cells', () => {
-    const read = readBytes(new Uint8Array(readFileSync(new URL('../../fixtures/demo/cells.csv', import.meta.url))))
+    const read = readBytes(new Uint8Array(readFileSync(new URL('../../../scripts/demo-data/cells.csv', import.meta.url))))
     if (!read.ok) throw new Error(read.problem.message)
     const control = read.reading.conditions.find(one => one.condition === 'control')!
     const { parameters } = accepted(fitCells(control, { model: 'two' }))

@@ -11,7 +11,7 @@ describe('rows in pieces', () => {
   it('are those of the whole text, wherever it is cut', () => {
     const row = fc.array(fc.oneof(fc.string({ unit: fc.constantFrom(...'ab1 .'), maxLength: 5 }), fc.string({ unit: fc.constantFrom(...'a"\n;'), maxLength: 5 }).map(text => `"${text.replaceAll('"', '""')}"`)), { minLength: 1, maxLength: 4 })
     fc.assert(fc.property(fc.array(row, { minLength: 1, maxLength: 10 }), fc.constantFrom('\n', '\r\n', '\r'), fc.array(fc.nat(60), { maxLength: 12 }), (rows, end, cuts) => {
-      const text = rows.map(cells => cells.join(';')).join(end), whole = splitRows(text, ';'), pieces = new RowPieces(';'), found = []
+      const text = rows.map(cells => cells.join(';')).join(end), whole = splitRows(text, ';'), pieces = new RowPieces(';'), found: ReturnType<RowPieces['push']> = []
       let from = 0
       for (const length of cuts) {
         found.push(...pieces.push(text.slice(from, from + length)))
