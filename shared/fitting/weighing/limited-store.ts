@@ -72,6 +72,11 @@ class Walk {
       if (left <= 0) return true
       const cap = Math.min(this.v > STORE_EMPTY ? Infinity : LONGEST, PART * empty / (this.s0 * Math.exp(-this.v) + this.c))
       let to = this.v + Math.min(left * this.speed(this.v), cap), taken = this.duration(to)
+      // A remainder below the last digit of v, or of the time, is none.
+      if (!(to > this.v) || !(taken > 0) || left <= 1e-14 * time) {
+        this.t = time
+        return true
+      }
       const ends = taken > left
       // The panel passes the time: Newton from the right is monotone, since the speed only falls.
       for (let tries = 0; ends && tries < 30; tries++) {

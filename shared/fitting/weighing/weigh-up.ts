@@ -103,6 +103,20 @@ function* described(weighing: Omit<Weighing, 'judgement'>, total: number): Gener
   return all
 }
 
+/**
+ * Search and verdict alone, without intervals or document: for calibrations and plans.
+ * @param input - recordings, settings
+ * @returns what was found and judged, or why there is nothing to weigh
+ */
+export function weighQuickly(input: WeighInput): Weighing | FitRefusal {
+  const ready = readyToWeigh(input)
+  if ('refused' in ready) return ready
+  const steps = searchAll(ready.data, { typed: ready.typed }, ready.explanations)
+  let step = steps.next()
+  while (!step.done) step = steps.next()
+  return { ...ready, found: step.value, judgement: judge(step.value, ready.data, { typed: ready.typed, cells: ready.cells !== null }) }
+}
+
 /** Numbers with ten digits: what is beyond them differs between machines and says nothing. */
 function rounded(value: unknown): unknown {
   if (typeof value === 'number') return Number.isFinite(value) ? Number(value.toPrecision(10)) : null
