@@ -35,6 +35,11 @@ function headerQuestion(rows: FileRow[], layout: Layout): Question[] {
   return [{ id: 'header', must: true, lines, suggested: null, sentence: `Lines ${lines.join(' and ')} both look like headers; which one holds?`, options: lines.map(line => ({ label: `line ${line}`, choices: { headerLine: line } })) }]
 }
 
+const kind = (shown: string, sentence: string): Guess => ({ id: 'kind', label: 'Table', shown, sure: 'certain', sentence, options: [] })
+const KINDS: Record<Frame['kind'], Guess> = {
+  summary: kind('means', 'No column names single cells.'), cells: kind('single cells', 'A column names the cells; means, SD, SEM and n are made from them.'), trace: kind('raw trace', 'A time stands beside a capacitance, and no ratio.'),
+}
+
 const firstOf = (columns: ColumnRead[]): Frame['byMeaning'] => {
   const found: Frame['byMeaning'] = {}
   for (const column of columns) if (column.filled > 0) found[column.meaning] ??= column
@@ -61,7 +66,7 @@ export function frameOf(rows: FileRow[], separator: Separator, choices: ReadingC
   const found = [mark, ...times ? [time] : [], ...byMeaning.ratio ? [ratio] : []]
   return {
     ...read, layout, byMeaning, marks: { decimal, settled, timeUnit, ratioScale, errorScale: errorScaleOf(read.columns, ratioScale, choices) },
-    guesses: [headerGuess(rows, layout), ...unitGuess(rows, layout, choices), ...found.map(one => one.guess)],
+    guesses: [KINDS[read.kind], headerGuess(rows, layout), ...unitGuess(rows, layout, choices), ...found.map(one => one.guess)],
     questions: [...headerQuestion(rows, layout), ...read.questions, ...found.flatMap(one => one.question ?? [])],
   }
 }

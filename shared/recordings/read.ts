@@ -3,7 +3,7 @@ import type { FieldProblem } from '../schemas/problem'
 import { RECORDING_LIMITS, type RecordingReading } from '../schemas/recording'
 import type { ReadingChoices } from './choices'
 import { MEANING_NAMES } from './columns'
-import { makeConditions } from './conditions'
+import { makeConditions, type NamedLine } from './conditions'
 import { decodeBytes, type Decoded } from './decode'
 import { frameOf, type Frame } from './frame'
 import { readLines } from './lines'
@@ -13,6 +13,7 @@ import type { RowKind } from './layout'
 import type { ColumnRead, Encoding, Guess, LineRead, Question, Reading, Separator } from './reading'
 import { runDownWarning } from './rundown'
 import { MOST_CELLS, lineEndsOf, shapelessness, splitRows, withFeeds, type SplitText } from './rows'
+import { errorSentence } from './spread'
 import { findSeparator } from './separator'
 import { readTrace } from './trace-reading'
 import type { Trace } from './trace-samples'
@@ -107,6 +108,10 @@ export function readRecording(text: string, choices: ReadingChoices = {}, decode
   return readWithTrace(text, choices, decoded).reading
 }
 
+const withErrorSentences = (columns: ColumnRead[], kept: NamedLine[]) => columns.map(column => (column.meaning === 'sem' || column.meaning === 'sd') && column.filled > 0
+  ? { ...column, sentence: column.sentence + errorSentence(column.meaning, kept.map(line => line.kept.n)) }
+  : column)
+
 function readTable(split: SplitText, frame: Frame, separator: Separator, choices: ReadingChoices, blank: Reading): Reading {
   const tally = new Tally(), kind = frame.kind === 'cells' ? 'cells' as const : 'summary' as const
   const { lines, kept } = readLines(split.rows, frame, { columns: frame.byMeaning, marks: frame.marks, choices, kind, tally }, choices, separator)
@@ -117,7 +122,7 @@ function readTable(split: SplitText, frame: Frame, separator: Separator, choices
   const lost = counts.filter(count => count.empty > 0).map(count => ({ id: 'empty', lines: [], sentence: `${count.condition}: ${count.empty} of ${count.rows} empty. They count as lost, never as 0.` }))
   const problems = kept.length === 0 && !questions.some(one => one.must) ? [{ path: 'file', message: 'No line could be kept; each says why.' }] : []
   return {
-    ...blank, lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost, ...rundown, ...alikeWarning(conditions.map(one => one.condition))],
+    ...blank, columns: withErrorSentences(blank.columns, kept), lines, conditions, counts, questions, problems, missing: tally.missing, warnings: [...warningsOf(tally), ...repeats.warnings, ...unsortedWarning(kept), ...lost, ...rundown, ...alikeWarning(conditions.map(one => one.condition))],
     setAside: lines.filter(isAside).map(({ line, remark }) => ({ line, reason: remark.replace(/^set aside: /, '').slice(0, 300) })),
     sentence: sentenceOf(kind, kept.length, lines, split.lines), ready: problems.length === 0 && kept.length > 0 && !questions.some(one => one.must),
   }

@@ -48,3 +48,15 @@ export function settleSpread(stated: StatedErrors): Spread {
   if (halfWidth !== null) return completed(null, semOf(halfWidth, n), n, ['from-half-width'])
   return fromLimits(stated) ?? { sd: null, sem: null, notes: ['unweighted'] }
 }
+
+/**
+ * What tells an SEM from an SD, said beside the column that was taken for one of them.
+ * @param meaning - what the column was taken for
+ * @param counts - n of the points [count]
+ * @returns a sentence, or nothing where n says nothing
+ */
+export function errorSentence(meaning: 'sem' | 'sd', counts: (number | null)[]): string {
+  const known = counts.filter((n): n is number => n !== null && n > 1).sort((a, b) => a - b), n = known[Math.floor(known.length / 2)]
+  if (n === undefined) return ''
+  return meaning === 'sem' ? ` An SD would be about ${Math.sqrt(n).toPrecision(2)} times larger with n of ${n}.` : ` An SEM would be about ${Math.sqrt(n).toPrecision(2)} times smaller with n of ${n}.`
+}

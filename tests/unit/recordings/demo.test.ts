@@ -40,6 +40,8 @@ describe('control_messy.csv', () => {
   it('shows s, percent and SEM to be confirmed, and asks nothing', () => {
     expect([guessOf(reading, 'time'), guessOf(reading, 'ratio')].map(guess => [guess!.shown, guess!.sure])).toEqual([['s', 'guess'], ['percent', 'guess']])
     expect(reading.columns.map(column => column.meaning)).toEqual(['interval', 'ratio', 'sem', 'n', 'ignore'])
+    expect(reading.columns[2]!.sentence).toBe('Named so. An SD would be about 3.0 times larger with n of 9.')
+    expect(guessOf(reading, 'kind')!.shown).toBe('means')
     expect(reading.columns[4]!.sentence).toBe('Empty in every line.')
     expect(reading.questions).toEqual([])
     expect(reading.ready).toBe(true)
