@@ -79,13 +79,15 @@ interface Measures { columns: number, narrow: boolean, left: number, wide: numbe
 function measure({ width, weighUp }: WeighOptions, best: readonly WeighCandidate[], reachText: string): Measures {
   const columns = columnsFor(width, weighUp.conditions.length), narrow = width < 560
   const names = best.map(one => Math.max(textWidth(nameInFigure(one.name), true), textWidth(criterionWord(one, weighUp.criterion))))
-  const left = narrow ? NARROW_LEFT : Math.ceil(Math.max(12 + textWidth(Y_TITLE) + 40, 54 + Math.max(0, ...names) + 20 + textWidth(reachText)))
+  const left = narrow ? NARROW_LEFT : Math.ceil(Math.max(12 + textWidth(Y_TITLE) + 40, 54 + Math.max(0, ...names) + 28 + textWidth(reachText)))
   const wide = (width - left - RIGHT - GAP * (columns - 1)) / columns
   const frameTop = narrow ? 64 : 56
-  const frameHeight = narrow ? 170 : Math.round(Math.min(250, Math.max(170, wide * (columns === 1 ? 0.4 : 0.72))))
-  const pitch = narrow ? 56 : 50 - (frameHeight < 250 ? 6 : 0), half = narrow ? 15 : 19 - (frameHeight < 250 ? 2 : 0)
-  const firstStrip = frameTop + frameHeight + (narrow ? 51 : 39)
-  return { columns, narrow, left, wide, frameTop, frameHeight, pitch, half, firstStrip, rowHeight: firstStrip + pitch * (best.length - 1) + (narrow ? 66 : 59) }
+  const frameHeight = narrow ? 170 : Math.round(Math.min(250, Math.max(165, wide * (columns === 1 ? 0.4 : 0.62))))
+  // Tighter in narrow columns: two rows of two with six explanations still fit a printed page.
+  const tight = frameHeight < 200
+  const pitch = narrow ? 56 : tight ? 40 : 50, half = narrow || tight ? 15 : 19
+  const firstStrip = frameTop + frameHeight + (narrow ? 55 : half + 20)
+  return { columns, narrow, left, wide, frameTop, frameHeight, pitch, half, firstStrip, rowHeight: firstStrip + pitch * (best.length - 1) + half + (narrow ? 51 : 40) }
 }
 
 const px = (value: number) => value.toFixed(1)
@@ -158,11 +160,11 @@ function sideOf(row: number, values: ValueAxis, { options: { weighUp, width }, b
   const { narrow, left, half, frameTop, firstStrip, pitch, rowHeight } = measures, top = row * rowHeight
   const barred = weighUp.conditions.some(one => one.points.some(({ error }) => error !== null))
   const names = best.map((one, k): WeighName => {
-    const middle = top + firstStrip + pitch * k, y = narrow ? middle - half - 9 : middle, x = narrow ? left : 12
+    const middle = top + firstStrip + pitch * k, y = narrow ? middle - half - 13 : middle, x = narrow ? left : 12
     const name = nameInFigure(one.name), named = x + (narrow ? 38 : 42)
     return {
       key: one.explanation, className: WEIGH_CLASSES[k % WEIGH_CLASSES.length]!, sample: `M${x} ${px(y)}h${narrow ? 30 : 34}`, x: named, y: y + 4, name,
-      criterion: criterionWord(one, weighUp.criterion), criterionX: narrow ? named + textWidth(name, true) + 10 : named, criterionY: narrow ? y + 4 : y + 20,
+      criterion: criterionWord(one, weighUp.criterion), criterionX: narrow ? width - RIGHT : named, criterionY: narrow ? y + 4 : y + 20,
     }
   })
   const bars = barred ? 'ratio ± standard error' : 'ratio; no error is known'
