@@ -31,12 +31,21 @@ export class RowPieces {
     if (cut < 0) {
       this.pending.push(tidy)
       this.waiting += tidy.length
-      return this.waiting > LONGEST_ROW ? this.end() : []
+      return this.waiting > LONGEST_ROW ? this.giveUpWaiting() : []
     }
     const whole = [...this.pending, tidy.slice(0, cut + 1)].join('')
     this.pending = [tidy.slice(cut + 1)]
     this.waiting = tidy.length - cut - 1
     return this.split(whole)
+  }
+
+  /** A quote that stands inside a plain cell (5") closes nothing: the rows so far are cut at their last break after all. */
+  private giveUpWaiting(): FileRow[] {
+    const text = this.pending.join(''), cut = text.lastIndexOf('\n') + 1
+    this.pending = [text.slice(cut)]
+    this.waiting = text.length - cut
+    this.open = false
+    return cut === 0 ? [] : this.split(text.slice(0, cut))
   }
 
   /** The rest, when no more comes. */

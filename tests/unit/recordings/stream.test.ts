@@ -22,6 +22,14 @@ describe('rows in pieces', () => {
       expect(lastEmpty(found)).toEqual(lastEmpty(whole.rows))
     }), { numRuns: 500 })
   })
+  it('are not torn where a stray quote stands inside a plain cell', () => {
+    const text = ['t,c,note', '1,2,5" pipette', ...Array.from({ length: 200_000 }, (_, i) => `${i},${i % 7},plain`)].join('\n'), pieces = new RowPieces(','), found = []
+    for (let from = 0; from < text.length; from += 70_001) found.push(...pieces.push(text.slice(from, from + 70_001)))
+    found.push(...pieces.end())
+    expect(found).toHaveLength(200_002)
+    expect(found.every((row, i) => row.cells.length === 3 && row.line === i + 1)).toBe(true)
+    expect(pieces.unclosed).toBeNull()
+  })
   it('name the line of an unclosed quote', () => {
     const pieces = new RowPieces(',')
     pieces.push('a,b\n1,2\n"3')
