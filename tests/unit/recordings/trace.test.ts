@@ -2,6 +2,7 @@
 import seedrandom from 'seedrandom'
 import { beforeAll, describe, expect, it } from 'vitest'
 import type { ReadingChoices } from '../../../shared/recordings/choices'
+import { envelopeOf } from '../../../shared/recordings/envelope'
 import { readWithTrace } from '../../../shared/recordings/read'
 import { measureTrace, DEFAULT_WINDOWS, type TraceSettings } from '../../../shared/recordings/trace'
 import type { Trace } from '../../../shared/recordings/trace-samples'
@@ -92,6 +93,23 @@ describe('the slope of the baseline', () => {
     const noisy = open().trace!, off = steps(noisy).steps[0].standardErrorFf, on = steps(noisy, { subtractSlope: true }).steps[0].standardErrorFf
     // SD of a slope over 200 samples in 0.2 s: 6·√12/(0.2·√200) fF/s, carried on for 0.45 s.
     expect(Math.sqrt(on ** 2 - off ** 2)).toBeGreaterThan(0.8 * 0.45 * 6 * Math.sqrt(12) / (0.2 * Math.sqrt(200)))
+  })
+})
+
+describe('the envelope for drawing', () => {
+  const { trace } = open({ noiseFf: 0 })
+  it('keeps the peak of the artefact, and shows stretches without samples as such', () => {
+    const { timeS, lowFf, highFf } = envelopeOf(trace!, 0, 8, 80)
+    expect(timeS).toHaveLength(80)
+    expect(timeS[0]).toBeCloseTo(0.05, 12)
+    expect(Math.max(...highFf.filter(value => value !== null))).toBe(Math.max(...trace!.capacitanceFf.filter(value => !Number.isNaN(value))))
+    expect([10, 11, 44, 45].map(column => lowFf[column])).toEqual([null, null, null, null])
+    expect(lowFf.every((low, i) => low === null || low <= highFf[i]!)).toBe(true)
+  })
+  it('leaves columns between samples out, and is empty for an empty view', () => {
+    expect(envelopeOf(trace!, 0, 0.01, 100).timeS).toHaveLength(10)
+    expect(envelopeOf(trace!, 1, 1, 100).timeS).toEqual([])
+    expect(envelopeOf(trace!, 9, 10, 100).timeS).toEqual([])
   })
 })
 
