@@ -82,9 +82,9 @@ function measure({ width, weighUp }: WeighOptions, best: readonly WeighCandidate
   const left = narrow ? NARROW_LEFT : Math.ceil(Math.max(12 + textWidth(Y_TITLE) + 40, 54 + Math.max(0, ...names) + 28 + textWidth(reachText)))
   const wide = (width - left - RIGHT - GAP * (columns - 1)) / columns
   const frameTop = narrow ? 64 : 56
-  const frameHeight = narrow ? 170 : Math.round(Math.min(250, Math.max(165, wide * (columns === 1 ? 0.4 : 0.62))))
+  const frameHeight = narrow ? 170 : width < 900 ? Math.round(Math.min(220, Math.max(165, wide * 0.62))) : Math.round(Math.min(250, Math.max(180, wide * 0.97)))
   // Tighter in narrow columns: two rows of two with six explanations still fit a printed page.
-  const tight = frameHeight < 200
+  const tight = !narrow && width < 900 && columns > 1
   const pitch = narrow ? 56 : tight ? 40 : 50, half = narrow || tight ? 15 : 19
   const firstStrip = frameTop + frameHeight + (narrow ? 55 : half + 20)
   return { columns, narrow, left, wide, frameTop, frameHeight, pitch, half, firstStrip, rowHeight: firstStrip + pitch * (best.length - 1) + half + (narrow ? 51 : 40) }
@@ -167,12 +167,11 @@ function sideOf(row: number, values: ValueAxis, { options: { weighUp, width }, b
       criterion: criterionWord(one, weighUp.criterion), criterionX: narrow ? width - RIGHT : named, criterionY: narrow ? y + 4 : y + 20,
     }
   })
-  const bars = barred ? 'ratio ± standard error' : 'ratio; no error is known'
   const foot = top + firstStrip + pitch * Math.max(0, best.length - 1) + half + 6
   const word = (key: string, text: string, soft: boolean, x: number, y: number, anchor: 'start' | 'end' = 'start') => ({ key, text, soft, x, y, anchor })
   const titles = narrow
-    ? [word('y', elided(`${Y_TITLE}, ${bars}`, width - left - RIGHT), true, left, top + frameTop - 8), word('x', X_TITLE, true, width - RIGHT, foot + 37, 'end')]
-    : [word('y', Y_TITLE, false, 12, top + frameTop + 4), word('y2', bars, true, 12, top + frameTop + 20), word('x', X_TITLE, true, 12, foot + 21)]
+    ? [word('y', elided(`${Y_TITLE}${barred ? ' ± standard error' : '; no error is known'}`, width - left - RIGHT), true, left, top + frameTop - 8), word('x', X_TITLE, true, width - RIGHT, foot + 37, 'end')]
+    : [word('y', Y_TITLE, false, 12, top + frameTop - 10), word('y2', barred ? 'ratio ± standard error' : 'ratio; no error is known', true, 12, top + frameTop + 6), word('x', X_TITLE, true, 12, foot + 21)]
   const ticks = values.ticks.map(tick => word(`v${tick.at}`, tick.text!, true, left - 8, values.place(tick.at) + 4, 'end'))
   const ends = best.length ? [word('+', `+${reachText}`, true, left - 8, top + firstStrip - half + 4, 'end'), word('-', `−${reachText}`, true, left - 8, top + firstStrip + half + 4, 'end')] : []
   return { key: `r${row}`, names, words: [...titles, ...ticks, ...ends] }
