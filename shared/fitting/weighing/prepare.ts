@@ -56,7 +56,7 @@ const sdOf = ({ sd, sem, n }: SummaryPoint): number => known(sd) ? sd : known(se
 function errorsOf(points: readonly SummaryPoint[], pooledSd: number | null): { errors: number[], kind: NoiseKind } {
   const pooled = points.map(({ n }) => pooledSd !== null && pooledSd > 0 && known(n) && n > 0 ? pooledSd / Math.sqrt(n) : NaN)
   const errors = points.map((point, i) => Number.isFinite(pooled[i]!) ? pooled[i]! : semOf(point))
-  if (errors.some(error => !Number.isFinite(error))) return { errors: points.map(() => 1), kind: 'scatter' }
+  if (points.length === 0 || errors.some(error => !Number.isFinite(error))) return { errors: points.map(() => 1), kind: 'scatter' }
   const byPool = pooled.filter(Number.isFinite).length
   return { errors, kind: byPool === points.length ? 'pooled' : byPool > 0 ? 'mixed' : 'sem' }
 }

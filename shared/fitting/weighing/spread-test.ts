@@ -6,6 +6,8 @@ import type { Found } from './search'
 
 export const SPREAD_EXCLUDED_BELOW = 0.15
 export const SPREAD_SUPPORTED_ABOVE = 0.5
+/** Above it the fitted spread is too narrow to be what makes cells differ (a curve that is no spread has hardly any). */
+export const SPREAD_TOO_NARROW_ABOVE = 2
 
 export interface SpreadTest {
   /** Σ(n − 1)·SD² seen over what the fitted spread would give [1]. */
@@ -35,5 +37,5 @@ export function testSpread(spread: Found | undefined, data: WeighData, typed: Ty
   })
   if (seen === 0 && predicted === 0) return null
   const q = predicted > 0 ? Math.min(seen / predicted, 1e6) : 1e6
-  return { q, reading: q < SPREAD_EXCLUDED_BELOW ? 'inside-cells' : q > SPREAD_SUPPORTED_ABOVE ? 'between-cells' : 'open' }
+  return { q, reading: q < SPREAD_EXCLUDED_BELOW ? 'inside-cells' : q > SPREAD_SUPPORTED_ABOVE && q <= SPREAD_TOO_NARROW_ABOVE ? 'between-cells' : 'open' }
 }

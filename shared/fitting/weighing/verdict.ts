@@ -125,7 +125,7 @@ export function judge(found: ReadonlyMap<Explanation, readonly Found[]>, data: W
   const room = roomOfOneKind(ranked, data, scale)
   if (room !== null && room > 0) return prefer('one-kind', 'suffices', room)
   if (!best.acceptable) return { ...base, kind: 'cannot-tell', rule: 'none-acceptable' }
-  const cellsDiffer = !settings.cells && ((spread?.q ?? 0) > 0.5 || (data.noise.pooledSd ?? 0) > MOST_SD)
+  const cellsDiffer = !settings.cells && (spread?.reading === 'between-cells' || (data.noise.pooledSd ?? 0) > MOST_SD)
   const ahead = best.explanation !== 'one-kind' && others.every(one => one.behind >= needed(one.explanation))
   if (ahead && !cellsDiffer) return prefer(best.explanation, 'ahead', base.margin)
   return { ...base, kind: 'cannot-tell', rule: ahead ? 'cells-differ' : 'tied' }
