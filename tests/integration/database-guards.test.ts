@@ -36,6 +36,7 @@ const CHANGES = [
   'update run_blocks set digest = digest', 'delete from run_blocks', 'truncate run_blocks',
   'update audit_events set note = \'forged\'', 'delete from audit_events', 'truncate audit_events',
   'update runs set seed = \'other\'', 'update runs set outcome = \'{}\'', 'update runs set digest = repeat(\'0\', 64)', 'delete from runs', 'truncate runs cascade',
+  'truncate uploads cascade', 'truncate fits', 'truncate weigh_up_versions', 'truncate recording_points',
 ]
 describe.each([['the application', 'applicationUrl'], ['the owner', 'ownerUrl'], ['the superuser', 'superUrl']] as const)('%s', (_, url) => {
   it.each(CHANGES)('cannot %s', async (statement) => {

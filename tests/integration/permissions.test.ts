@@ -27,7 +27,7 @@ describe('the table of routes', () => {
   it.each(files)('%s lets in whom its row says', (file) => {
     const { access } = ROUTES.find(row => nameOf(row) === routeOfFile(file))!
     const source = readFileSync(join(API, file), 'utf8')
-    const calls = [...source.matchAll(/(publicRoute|signedIn|requireMember)\(event(?:, '([\w.]+)')?/g)].map(([, call, action]) => action ?? call)
+    const calls = [...source.matchAll(/(publicRoute|signedIn|requireMember)\(event(?:, '([\w.-]+)')?/g)].map(([, call, action]) => action ?? call)
     expect(calls, relative(API, file)).toEqual([access === 'public' ? 'publicRoute' : access === 'signed-in' ? 'signedIn' : access])
   })
   it('knows the methods of an address', () => {
