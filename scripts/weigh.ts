@@ -57,7 +57,8 @@ async function toTheEnd<T>(steps: Generator<WeighProgress, T | FitRefusal>, sign
     }
     if (performance.now() - rested < 100) continue
     await new Promise(resolve => setImmediate(resolve))
-    if (signal.aborted) return null
+    // While cells are resampled the rest is done: that ends by itself and keeps what it has.
+    if (signal.aborted && step.value.stage !== 'resample') return null
     rested = performance.now()
   }
 }
@@ -79,14 +80,14 @@ async function weigh(): Promise<number> {
   process.once('SIGTERM', () => interruption.abort())
   const { input, json, sensitivity, notes } = readAsked()
   for (const note of notes) process.stderr.write(`Note, ${note}\n`)
-  const found = await toTheEnd(weighUpSteps(input), interruption.signal)
+  const found = await toTheEnd(weighUpSteps({ ...input, stopResampling: () => interruption.signal.aborted }), interruption.signal)
   const other = found && sensitivity ? await toTheEnd(sensitivitySteps(input), interruption.signal) : null
   if (!found || (sensitivity && !other)) {
     process.stderr.write('Interrupted before the weigh-up was done; there is no result.\n')
     return EXIT.interrupted
   }
   process.stdout.write(`${json ? JSON.stringify(other ? { ...found, sensitivity: other } : found) : summary(found, other)}\n`)
-  return EXIT.done
+  return found.resample?.partial ? EXIT.interrupted : EXIT.done
 }
 
 await runCommand(weigh)

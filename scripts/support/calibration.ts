@@ -13,11 +13,11 @@ export interface Truth { explanation: Explanation, settings: number[][], /** Pla
 
 export const TRUTHS: readonly Truth[] = [
   { explanation: 'site-kinds', settings: [[0.6, 1.2, 0.05], [0.5, 2.5, 0.1], [0.4, 0.8, 0.03]], changes: { A: [1, 1 / 4], B: [0, 1 / 3] } },
-  { explanation: 'limited-store', settings: [[1.2, 0.05, 0.5], [2, 0.1, 0.4], [0.6, 0.03, 0.6]], changes: { A: [2, 1 / 3], B: [0, 1 / 4] } },
+  { explanation: 'limited-store', settings: [[1.2, 0.05, 0.5], [0.8, 0.05, 0.4], [0.6, 0.02, 0.8]], changes: { A: [0, 1 / 4], B: [2, 1 / 3] } },
   { explanation: 'declining-drive', settings: [[1.5, 0.05, 0.8], [0.8, 0.1, 2], [1.2, 0.03, 1.5]], changes: { A: [0, 1 / 4], B: [2, 1 / 4] } },
   { explanation: 'one-kind', settings: [[0.08], [0.25], [1.2]], changes: { A: [0, 1 / 4], B: [0, 1 / 2] } },
   { explanation: 'two-step', settings: [[0.3, 2], [0.5, 1], [0.8, 5]], changes: { A: [0, 1 / 3], B: [1, 1 / 4] } },
-  { explanation: 'spread', settings: [[0.3, 2.25], [0.3, 1], [0.5, 4]], changes: { A: [0, 1 / 4], B: [1, 1 / 4] } },
+  { explanation: 'spread', settings: [[0.3, 2.25], [0.3, 1.44], [0.5, 4]], changes: { A: [0, 1 / 4], B: [1, 1 / 4] } },
 ]
 
 const DEPLETION = 0.88, SHORT_DEPLETION = 0.35

@@ -86,7 +86,7 @@ export function* resampleCells(weighing: Weighing, input: WeighInput): Generator
   }))
   if (sources.some(({ rows }) => rows.length < 3)) return null
   const lead = judgement.ranked[0]!, tally = new Tally(lead.found, lead.explanation, weighing), [low, high] = seedWords(seed)
-  for (let b = 0; b < resamples; b++) {
+  for (let b = 0; b < resamples && !input.stopResampling?.(); b++) {
     const stream = new Stream(stateOf(low, high, b)), conditions = sources.map(source => drawn(source, stream, weighing))
     const again: WeighData = { ...data, conditions, points: conditions.reduce((sum, one) => sum + one.times.length, 0) }
     const steps = searchAll(again, { typed, warm: found }, explanations)
@@ -97,7 +97,7 @@ export function* resampleCells(weighing: Weighing, input: WeighInput): Generator
   }
   const cells = sources.reduce((sum, { rows }) => sum + rows.length, 0), dof = cells - sources.length
   return {
-    asked: resamples, done: tally.done, seed, partial: false, sameExplanation: tally.sameExplanation, sameChanges: tally.sameChanges, best: tally.leaders(), parameters: tally.parameters(cells / sources.length, dof),
+    asked: resamples, done: tally.done, seed, partial: tally.done < resamples, sameExplanation: tally.sameExplanation, sameChanges: tally.sameChanges, best: tally.leaders(), parameters: tally.parameters(cells / sources.length, dof),
     sentence: `In ${tally.sameExplanation} of ${tally.done} resamples of the cells ${EXPLANATION_NAMES[lead.explanation]} ${SPOKEN_AS_MANY.has(lead.explanation) ? 'lead' : 'leads'}${lead.found.changes.size > 0 ? `, in ${tally.sameChanges} with the same changes` : ''}. This share is information; it decides nothing.`,
   }
 }

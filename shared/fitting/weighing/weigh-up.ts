@@ -24,6 +24,8 @@ export interface WeighInput {
   settings: WeighSettings
   /** Conditions over which the SD is pooled where `settings.pooledSd` is null; these by default. */
   pool?: readonly ConditionData[]
+  /** Asked before each resample: true ends the resampling and keeps what is done, marked partial. */
+  stopResampling?: () => boolean
 }
 
 /** What every part of a weigh-up works from. */

@@ -174,6 +174,11 @@ describe('steps', () => {
     expect(found(conditions, settings).digest).toBe(first.digest)
     expect(found(conditions, { ...settings, seed: 'two' }).digest).not.toBe(first.digest)
   })
+  it('resampling that is stopped keeps what is done, marked partial', () => {
+    let asked = 0
+    const result = weighUp({ conditions: [cellsOf({})], settings: WeighSettingsSchema.parse({ resamples: 50 }), stopResampling: () => asked++ >= 7 })
+    expect(result && 'refused' in result ? null : result?.resample).toMatchObject({ asked: 50, done: 7, partial: true })
+  })
   it('resamples of means are not made, and that is said', () => {
     const result = found([exact('site-kinds', SITES)], { resamples: 20 })
     expect(result.resample).toBeNull()
