@@ -1,6 +1,6 @@
 /** One file under the reader: its bytes stay with a worker, each change of a choice reads it again. */
 import { transfer, wrap, type Remote } from 'comlink'
-import type { ReadingChoices } from '#shared/recordings/choices'
+import { withAnswer, type ReadingChoices } from '#shared/recordings/choices'
 import { sizeProblem } from '#shared/recordings/decode'
 import { FileReadingDesk, type FileReading } from '~/utils/fileReadingDesk'
 
@@ -53,12 +53,14 @@ export function useFileReading() {
     await start().open(worker ? transfer(held, [held.buffer]) : held)
     await again()
   }
-  /** Adds a choice, or takes it back where a value is undefined. */
+  /** Adds an answer. */
   function choose(change: ReadingChoices) {
-    const columns = { ...choices.value.columns, ...change.columns }
-    const leftOut = change.leftOut ?? choices.value.leftOut
-    choices.value = { ...choices.value, ...change, ...(Object.keys(columns).length && { columns }), ...(leftOut && { leftOut }) }
+    choices.value = withAnswer(choices.value, change)
     void again()
+  }
+  /** Lines left out by hand, as a whole. */
+  function leaveOut(leftOut: NonNullable<ReadingChoices['leftOut']>) {
+    replace({ ...choices.value, leftOut })
   }
   function replace(all: ReadingChoices) {
     choices.value = all
@@ -70,5 +72,5 @@ export function useFileReading() {
     read.value = null
     choices.value = {}
   }
-  return { file: shallowReadonly(file), read: shallowReadonly(read), choices: shallowReadonly(choices), reading: readonly(reading), open, choose, replace, close }
+  return { file: shallowReadonly(file), read: shallowReadonly(read), choices: shallowReadonly(choices), reading: readonly(reading), open, choose, leaveOut, replace, close }
 }

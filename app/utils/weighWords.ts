@@ -13,9 +13,9 @@ export function weighVerdict({ kind, explanation, margin, rule }: WeighUpRow['ve
 }
 /** The line above the heading: what kind of verdict it is and by which margin. */
 export function weighKind({ verdict }: WeighUp): { word: string, kind: string, rest: string } {
-  if (verdict.kind === 'cannot-tell') return { word: 'Cannot tell', kind: 'caution', rest: ` between ${verdict.within.length || 'the'} explanations (${formatNumber(verdict.needed)} apart needed)` }
+  if (verdict.kind === 'cannot-tell') return { word: 'Cannot tell', kind: 'caution', rest: ` between ${verdict.within.length || 'the'} explanations (${verdict.needed} apart needed)` }
   if (verdict.rule === 'suffices') return { word: 'One exponential suffices', kind: 'good', rest: '; the others are not excluded' }
-  return { word: 'Prefers', kind: 'good', rest: ` ${verdict.explanation ? EXPLANATION_NAMES[verdict.explanation] : ''}, by ${formatNumber(verdict.margin, { significant: 3 })} against the runner-up (${formatNumber(verdict.needed)} needed)` }
+  return { word: 'Prefers', kind: 'good', rest: ` ${verdict.explanation ? EXPLANATION_NAMES[verdict.explanation] : ''}, by ${formatNumber(verdict.margin, { significant: 3 })} against the runner-up (${verdict.needed} needed)` }
 }
 export const READINGS: Record<WeighCandidate['reading'], { word: string, kind: string }> = {
   'preferred': { word: 'preferred', kind: 'good' }, 'within': { word: 'cannot be told apart', kind: 'caution' }, 'behind': { word: 'behind', kind: 'q' },

@@ -42,7 +42,7 @@ function rowsOf(recordingId: string, data: ConditionData): PointRow[] {
 async function insertOne(tx: Handle, reader: Reader, wanted: Wanted, keep: Wanted['keep'][number], data: ConditionData, read: { reading: Reading, choices: ReadingChoices }, at: Date): Promise<string> {
   const { from: _from, ...names } = keep
   const [made] = await tx.insert(recordings).values({
-    benchId: reader.benchId, uploadId: wanted.uploadId, ...names, kind: data.cells.length > 0 ? 'cells' : 'summary', reading: readingRecord(read.reading, read.choices),
+    benchId: reader.benchId, uploadId: wanted.uploadId, ...names, kind: read.reading.kind, reading: readingRecord(read.reading, read.choices),
     details: wanted.details, notes: wanted.notes, createdBy: reader.userId, updatedBy: reader.userId, createdAt: at, updatedAt: at,
   }).returning({ recordingId: recordings.recordingId })
   const { recordingId } = made!, rows = rowsOf(recordingId, data)

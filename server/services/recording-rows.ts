@@ -56,12 +56,12 @@ export async function listRecordings(db: Handle, reader: Reader, query: z.output
 
 /** The data of a recording as fits take them, with the position of each row. */
 export async function readConditionData(db: Handle, recordingId: string): Promise<{ data: ConditionData, positions: number[] }> {
-  const [head] = await db.select({ condition: recordings.condition, protocol: recordings.protocol, manipulation: recordings.manipulation, kind: recordings.kind })
+  const [head] = await db.select({ condition: recordings.condition, protocol: recordings.protocol, manipulation: recordings.manipulation })
     .from(recordings).where(eq(recordings.recordingId, recordingId))
   if (!head) throw problem('not_found')
   const rows = await db.select().from(recordingPoints).where(eq(recordingPoints.recordingId, recordingId)).orderBy(asc(recordingPoints.intervalMs), asc(recordingPoints.position))
-  const { kind, ...names } = head, positions = rows.map(row => row.position)
-  if (kind !== 'cells') return { positions, data: { ...names, cells: [], points: rows.map(({ intervalMs, ratio, sd, sem, n, aside, line }) => ({ intervalMs, ratio: ratio!, sd, sem, n, aside, line })) } }
+  const names = head, positions = rows.map(row => row.position)
+  if (rows.every(row => row.cell === null)) return { positions, data: { ...names, cells: [], points: rows.map(({ intervalMs, ratio, sd, sem, n, aside, line }) => ({ intervalMs, ratio: ratio!, sd, sem, n, aside, line })) } }
   const cells = rows.map(({ cell, intervalMs, ratio, first, aside, line }) => ({ cell: cell!, intervalMs, ratio, first, aside, line }))
   return { positions, data: { ...names, cells, points: meansOfCells(cells) } }
 }
