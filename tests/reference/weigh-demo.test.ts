@@ -78,6 +78,11 @@ describe('the demo bench', () => {
     expect(WeighUpSchema.parse(JSON.parse(JSON.stringify(found)))).toEqual(found)
     expect(weighed(['control', 'short']).digest).toBe(found.digest)
     expect(weighed(['control']).digest).not.toBe(found.digest)
+    // From the document's own settings, without the wider set that the SD was pooled over.
+    for (const file of ['summary.csv', 'cells.csv']) {
+      const all = conditionsIn(file), first = weighed(['control'], all), again = weighUp({ conditions: all.filter(one => one.condition === 'control'), settings: first.settings })
+      expect(again && 'digest' in again ? again.digest : null).toBe(first.digest)
+    }
   })
 
   it('control alone: a short step would exclude the limited store and leave the other two', () => {

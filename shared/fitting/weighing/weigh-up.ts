@@ -2,7 +2,7 @@
 import type { ConditionData } from '../../recordings/types'
 import type { WeighSettings, WeighUp } from '../../schemas/weigh-up'
 import { digestOf } from '../../walk/digest'
-import { refusal, type FitRefusal } from '../point-errors'
+import { pooledSdOf, refusal, type FitRefusal } from '../point-errors'
 import { describeCandidates, describeConditions } from './describe'
 import { doubtsOf } from './doubts'
 import { EXPLANATIONS, MODELS, type Explanation } from './explanations'
@@ -67,6 +67,14 @@ function duplicateNames(conditions: readonly ConditionData[]): string | undefine
   return conditions.find((one, i) => conditions.findIndex(other => other.condition === one.condition) !== i)?.condition
 }
 
+/** Digits that a document keeps. */
+const DIGITS = 10
+/** The pooled SD as the document will carry it, so that weighing again from the document gives its numbers again. */
+function roundedSd(pool: readonly ConditionData[]): number | undefined {
+  const sd = pooledSdOf(pool)
+  return sd === null ? undefined : Number(sd.toPrecision(DIGITS))
+}
+
 /**
  * Prepares data for weighing.
  * @param input - recordings and settings
@@ -75,7 +83,7 @@ function duplicateNames(conditions: readonly ConditionData[]): string | undefine
 export function readyToWeigh(input: WeighInput): FitRefusal | Pick<Weighing, 'plain' | 'data' | 'typed' | 'cells' | 'explanations'> {
   const { conditions, settings, pool = conditions } = input, twice = duplicateNames(conditions)
   if (twice !== undefined) return refusal('same-name', `Two conditions are called “${twice}”; give each its own name.`)
-  const typed = typedOf(settings), plain = prepare(conditions, pool, settings.pooledSd ?? undefined), cells = settings.cells ? cellNoise(plain, conditions) : null
+  const typed = typedOf(settings), plain = prepare(conditions, pool, settings.pooledSd ?? roundedSd(pool)), cells = settings.cells ? cellNoise(plain, conditions) : null
   const explanations = EXPLANATIONS.filter(one => parametersNeeded(one, plain, typed) + (plain.noise.kind === 'scatter' ? 2 : 0) < plain.points)
   return refuseData(plain, explanations) ?? { plain, data: cells ? withCells(plain, cells, conditions) : plain, typed, cells, explanations }
 }
@@ -121,7 +129,7 @@ export function weighQuickly(input: WeighInput): Weighing | FitRefusal {
 
 /** Numbers with ten digits: what is beyond them differs between machines and says nothing. */
 function rounded(value: unknown): unknown {
-  if (typeof value === 'number') return Number.isFinite(value) ? Number(value.toPrecision(10)) : null
+  if (typeof value === 'number') return Number.isFinite(value) ? Number(value.toPrecision(DIGITS)) : null
   if (Array.isArray(value)) return value.map(rounded)
   if (value !== null && typeof value === 'object') return Object.fromEntries(Object.entries(value).map(([key, one]) => [key, rounded(one)]))
   return value
@@ -144,7 +152,7 @@ export function* weighUpSteps(input: WeighInput): Generator<WeighProgress, Weigh
   const resample = input.settings.resamples > 0 ? yield* resampleCells(weighing, input) : null
   const candidates = describeCandidates(weighing, details)
   const document = rounded({
-    format: 'moorage-weigh-up', version: 1, settings: { ...input.settings, pooledSd: ready.cells ? input.settings.pooledSd : input.settings.pooledSd ?? ready.plain.noise.pooledSd },
+    format: 'moorage-weigh-up', version: 1, settings: { ...input.settings, pooledSd: input.settings.pooledSd ?? ready.plain.noise.pooledSd },
     conditions: describeConditions(weighing), untouched: ready.plain.untouched, noise: noiseOf(weighing), criterion: ready.data.noise.kind === 'scatter' ? 'aicc' : 'chi2', candidates,
     left: EXPLANATIONS.filter(one => !ready.explanations.includes(one)).map(explanation => ({ explanation, reason: 'It has as many parameters as there are points, or more.' })),
     spread: spreadSentence(weighing), verdict: verdictOf(weighing, candidates), doubts: doubtsOf(weighing, candidates, input), settle, resample, notes: notesOf(weighing, input),
