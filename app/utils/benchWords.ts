@@ -45,9 +45,14 @@ const CHANGES: Record<HomeChange['kind'], (change: HomeChange) => { does: string
   'scenario-restored': change => ({ does: 'took', link: change.title, to: `/scenarios/${change.scenarioId}`, rest: ' out of the bin' }),
   'run-saved': change => ({ does: 'saved', link: `Run ${change.runNumber}`, to: `/runs/${change.runId}`, rest: ` of ${change.title}` }),
   'run-binned': change => ({ does: 'put', link: `Run ${change.runNumber}`, to: '/runs?bin=1', rest: ` of ${change.title} in the bin` }),
+  'recording-kept': change => ({ does: 'kept the recording', link: change.title, to: `/recordings/${change.recordingId}`, rest: '' }),
+  'recording-changed': change => ({ does: 'changed the recording', link: change.title, to: `/recordings/${change.recordingId}`, rest: '' }),
+  'recording-binned': change => ({ does: 'put the recording', link: change.title, to: '/recordings?bin=1', rest: ' in the bin' }),
+  'weigh-up-saved': change => ({ does: change.revision === 1 ? 'weighed' : 'weighed again', link: change.title, to: `/weigh-ups/${change.weighUpId}`, rest: '' }),
+  'weigh-up-binned': change => ({ does: 'put the weigh-up', link: change.title, to: '/weigh-ups?bin=1', rest: ' in the bin' }),
 }
 /** Whatever lies in the bin now is looked for there. */
-const BINS = { scenario: '/scenarios?bin=1', run: '/runs?bin=1' } as const
+const BINS = { 'scenario': '/scenarios?bin=1', 'run': '/runs?bin=1', 'recording': '/recordings?bin=1', 'weigh-up': '/weigh-ups?bin=1' } as const
 export function changeWords(change: HomeChange) {
   const words = CHANGES[change.kind](change)
   return change.binned ? { ...words, to: BINS[change.binned] } : words

@@ -1,7 +1,7 @@
 /** The bench at a glance: the newest scenarios with their last run, what changed, who belongs to it. */
 import { and, desc, eq, inArray, isNull, sql } from 'drizzle-orm'
 import type { Handle } from '../db/client'
-import { auditEvents, CHANGE_KINDS, runs, scenarios, users } from '../db/schema'
+import { auditEvents, CHANGE_KINDS, recordings, runs, scenarios, users, weighUps } from '../db/schema'
 import type { BenchHome } from '../../shared/schemas/api/bench'
 import { describeBench, listMembers } from './benches'
 import type { Reader } from './scenario-rows'
@@ -27,13 +27,15 @@ async function newestScenarios(db: Handle, benchId: string): Promise<BenchHome['
 
 async function newestChanges(db: Handle, benchId: string): Promise<BenchHome['changes']> {
   const rows = await db.select({
-    kind: auditEvents.kind, who: users.name, at: auditEvents.at, scenarioId: scenarios.scenarioId, title: scenarios.title,
+    kind: auditEvents.kind, who: users.name, at: auditEvents.at, scenarioId: auditEvents.scenarioId, title: sql<string>`coalesce(${scenarios.title}, ${recordings.title}, ${weighUps.title}, '')`,
+    recordingId: auditEvents.recordingId, weighUpId: auditEvents.weighUpId, recordingGone: recordings.deletedAt, weighUpGone: weighUps.deletedAt,
     revision: auditEvents.revision, runId: auditEvents.runId, runNumber: runs.number, scenarioGone: scenarios.deletedAt, runGone: runs.deletedAt,
   }).from(auditEvents)
-    .innerJoin(users, eq(users.userId, auditEvents.actorId)).innerJoin(scenarios, eq(scenarios.scenarioId, auditEvents.scenarioId)).leftJoin(runs, eq(runs.runId, auditEvents.runId))
+    .innerJoin(users, eq(users.userId, auditEvents.actorId)).leftJoin(scenarios, eq(scenarios.scenarioId, auditEvents.scenarioId)).leftJoin(recordings, eq(recordings.recordingId, auditEvents.recordingId))
+    .leftJoin(weighUps, eq(weighUps.weighUpId, auditEvents.weighUpId)).leftJoin(runs, eq(runs.runId, auditEvents.runId))
     .where(and(eq(auditEvents.benchId, benchId), inArray(auditEvents.kind, [...CHANGE_KINDS]))).orderBy(desc(auditEvents.at), desc(auditEvents.eventId)).limit(MOST)
-  return rows.map(({ scenarioGone, runGone, ...row }) => ({
-    ...row, kind: row.kind as BenchHome['changes'][number]['kind'], at: row.at.toISOString(), binned: scenarioGone ? 'scenario' : runGone ? 'run' : null,
+  return rows.map(({ scenarioGone, runGone, recordingGone, weighUpGone, ...row }) => ({
+    ...row, kind: row.kind as BenchHome['changes'][number]['kind'], at: row.at.toISOString(), binned: scenarioGone ? 'scenario' : runGone ? 'run' : recordingGone ? 'recording' : weighUpGone ? 'weigh-up' : null,
   }))
 }
 

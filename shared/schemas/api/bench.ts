@@ -24,7 +24,7 @@ export interface BenchHome {
   }[]
   scenarioCount: number
   /** Sentence parts: the page writes the words. */
-  changes: { kind: 'scenario-created' | 'revision-saved' | 'scenario-binned' | 'scenario-restored' | 'run-saved' | 'run-binned', who: string, at: string, scenarioId: string, title: string, revision: number | null, runId: string | null, runNumber: number | null, /** What of it lies in the bin now. */ binned: 'scenario' | 'run' | null }[]
+  changes: { kind: 'scenario-created' | 'revision-saved' | 'scenario-binned' | 'scenario-restored' | 'run-saved' | 'run-binned' | 'recording-kept' | 'recording-changed' | 'recording-binned' | 'weigh-up-saved' | 'weigh-up-binned', who: string, at: string, scenarioId: string | null, title: string, revision: number | null, runId: string | null, runNumber: number | null, recordingId: string | null, weighUpId: string | null, /** What of it lies in the bin now. */ binned: 'scenario' | 'run' | 'recording' | 'weigh-up' | null }[]
   members: { name: string, role: Role }[]
 }
 /** Every list: `?cursor=` from the last answer, `?limit=` 1…100 (default 25). */
