@@ -4,6 +4,7 @@ import type { Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import type { RunDetail } from '../../shared/schemas/api/run'
 import { makeBench } from '../support/bench'
+import { demoFile, keep, makeWeighUp } from '../support/recordings'
 import { runBody } from '../support/runs'
 import { arrive, type Visitor } from '../support/visitor'
 import list from '../house/accessibility.json'
@@ -27,7 +28,10 @@ beforeAll(async () => {
     if (saved.status !== 201) throw new Error(`The run was not saved: ${saved.status} ${JSON.stringify(saved.body)}`)
     runs.push(saved.body.runId)
   }
-  places = { ':scenarioId': scenarioId, ':runId': runs[0]!, 'compare': `/compare?runs=${runs.join(',')}` }
+  const kept = await keep(pier.lead, pier.benchId, demoFile('cells.csv')), recordingId = kept.body[0]!.recordingId
+  places = {
+    ':scenarioId': scenarioId, ':runId': runs[0]!, 'compare': `/compare?runs=${runs.join(',')}`, ':recordingId': recordingId, ':weighUpId': await makeWeighUp(pier.lead, pier.benchId, [recordingId]), 'weigh': `/weigh-ups/new?recordings=${recordingId}`,
+  }
   fresh = await arrive(pier.world.database.db, pier.base, 'Fresh Person')
 })
 afterAll(() => pier?.close())
@@ -64,9 +68,10 @@ async function lookOver(page: Page): Promise<string[]> {
 const OPEN = new Set(['/', '/sign-in', '/register', '/almanac'])
 describe('every page', () => {
   it.each(Object.entries(list.pages))('%s is accessible and fits its window', async (file, path) => {
-    const address = file === 'compare.vue' ? places.compare! : path.replace(/:\w+/g, name => places[name] ?? name)
+    const address = file === 'compare.vue' ? places.compare! : file === 'weigh-ups/new.vue' ? places.weigh! : path.replace(/:\w+/g, name => places[name] ?? name)
     const { page, seen, leave } = await pier.seat(address, { who: OPEN.has(path) ? null : undefined })
     if (path.includes('scenarios/:scenarioId') || file === 'scenarios/new.vue') await page.locator('main table, [data-preview="drawn"]').first().waitFor()
+    if (/weigh-ups\/(new|\[)|recordings\/\[/.test(file)) await page.locator('main table').first().waitFor()
     await page.locator('main h1').first().waitFor()
     expect(await lookOver(page)).toEqual([])
     expectQuiet(seen)
@@ -80,7 +85,7 @@ describe('every page', () => {
     expectQuiet(before.seen)
     await before.leave()
     await makeBench(pier.world, fresh, 'Empty pier')
-    for (const path of ['/bench', '/scenarios', '/runs']) {
+    for (const path of ['/bench', '/scenarios', '/runs', '/recordings', '/weigh-ups']) {
       const { page, seen, leave } = await pier.seat(path, { who: fresh })
       await page.locator('main h1').first().waitFor()
       expect(await lookOver(page), path).toEqual([])
@@ -99,6 +104,15 @@ describe('every page', () => {
       await leave()
     }
     expect(texts[1]).toBe(texts[0])
+  })
+
+  it('of a file that is being read, line by line', async () => {
+    const { page, seen, leave } = await pier.seat('/recordings/import')
+    await page.setInputFiles('input[type=file]', { name: 'control_messy.csv', mimeType: 'text/csv', buffer: demoFile('control_messy.csv') })
+    await page.locator('table.import').waitFor()
+    expect(await lookOver(page)).toEqual([])
+    expectQuiet(seen)
+    await leave()
   })
 
   it('of a run under way, on the front page and on its own', async () => {
