@@ -136,3 +136,10 @@ export const WeighSensitivitySchema = z.strictObject({
   rescale: text,
 })
 export type WeighSensitivity = z.infer<typeof WeighSensitivitySchema>
+
+/** How the verdict grew with the data: `conditions` are places in those of the weigh-up. */
+export const WeighGrowthSchema = z.array(z.strictObject({
+  conditions: z.array(z.number().int()), kind: z.enum(['prefers', 'cannot-tell']), explanation: explanation.nullable(), within: z.array(explanation),
+  chi2: z.array(z.strictObject({ explanation, chi2: number, dof: z.number().int() })),
+}))
+export type WeighGrowth = z.infer<typeof WeighGrowthSchema>

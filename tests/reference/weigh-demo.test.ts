@@ -2,9 +2,10 @@
 import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import type { Explanation } from '../../shared/fitting/weighing/explanations'
+import { growthSteps } from '../../shared/fitting/weighing/growth'
 import { weighQuickly, weighUp } from '../../shared/fitting/weighing/weigh-up'
 import { readBytes } from '../../shared/recordings/read'
-import { WeighSettingsSchema, WeighUpSchema, type WeighUp } from '../../shared/schemas/weigh-up'
+import { WeighGrowthSchema, WeighSettingsSchema, WeighUpSchema, type WeighUp } from '../../shared/schemas/weigh-up'
 
 function conditionsIn(file: string) {
   const read = readBytes(new Uint8Array(readFileSync(new URL(`../../scripts/demo-data/${file}`, import.meta.url))))
@@ -90,6 +91,17 @@ describe('the demo bench', () => {
     expect(truth!.separates).toBe(false)
     expect(truth!.pairs.find(one => one.rival === 'limited-store')!.gain).toBeGreaterThan(100)
     expect(truth!.pairs.find(one => one.rival === 'declining-drive')!.gain).toBeLessThan(6)
+  })
+
+  it('how the verdict grew: control, with each of the others, all four', () => {
+    const steps = growthSteps({ conditions: BENCH, settings })
+    let step = steps.next()
+    while (!step.done) step = steps.next()
+    const rows = WeighGrowthSchema.parse(step.value), sites = rows.map(row => row.chi2.find(one => one.explanation === 'site-kinds')!)
+    expect(rows.map(row => row.conditions)).toEqual([[0], [0, 1], [0, 2], [0, 3], [0, 1, 2, 3]])
+    expect(rows.map(row => row.explanation)).toEqual([null, 'site-kinds', null, null, 'site-kinds'])
+    ;[3.2, 19.4, 8.2, 8.2, 30.2].forEach((chi2, i) => expect(Math.abs(sites[i]!.chi2 - chi2)).toBeLessThan(0.3))
+    expect(sites.map(one => one.dof)).toEqual([7, 17, 17, 17, 37])
   })
 
   it('weighing quickly finds what weighing in full finds', () => {
