@@ -69,7 +69,7 @@ export function useImport() {
 
   /** Why it cannot be kept yet; empty when it can. */
   const obstacle = computed(() => {
-    if (!reading.value) return source.read.value ? 'Choose another file' : ''
+    if (!reading.value) return source.read.value ? 'Nothing was read' : 'Reading'
     const open = reading.value.questions.filter(question => question.must).length
     if (open > 0) return `Answer ${open} ${open === 1 ? 'question' : 'questions'} first`
     if (!reading.value.ready) return 'Nothing can be kept yet'

@@ -2,6 +2,7 @@
  * One exponential against two: parametric bootstrap under the one.
  * The likelihood ratio does not follow χ² here: the smaller model lies on the boundary of the richer, and one time constant has no meaning there (Davies 1977, Biometrika 64:247).
  */
+import { log } from './elementary'
 import { seedWords, stateOf, Stream } from '../walk/streams'
 import { curveProblem, placesOf, type Curve } from './curve-problem'
 import { normalDeviates } from './deviates'
@@ -36,7 +37,7 @@ export interface BootstrapResult {
 }
 
 const ratioOf = (known: boolean, points: number, one: number, two: number): number =>
-  known ? Math.max(0, one - two) : points * Math.log(Math.max(1, one / Math.max(two, 1e-300)))
+  known ? Math.max(0, one - two) : points * log(Math.max(1, one / Math.max(two, 1e-300)))
 
 /** New ratios about a curve: independent errors, or errors that the whitening factor would make independent again (W·e = z, solved from the first row down). */
 function draw({ ratios, weights, whitening }: Curve, fitted: Float64Array, deviates: Float64Array, scatter: number): void {

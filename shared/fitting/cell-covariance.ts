@@ -2,6 +2,7 @@
  * Covariance of means over cells: every cell has its own rates and its own depletion, so points of one cell go up and down together.
  * V = diag(σ²/n) + (κ² g gᵀ + δ² h hᵀ)/cells per condition, g = t·∂R/∂t (all rates of a cell scaled together), h = ∂R/∂d.
  */
+import { log } from './elementary'
 import type { CellPoint, ConditionData } from '../recordings/types'
 import { fitLeastSquares, SEARCH } from './least-squares'
 import { CURVES } from './weighing/curves'
@@ -46,9 +47,9 @@ export function cellDirections(timesS: Float64Array, ratio: Float64Array, error:
     }
     return true
   }
-  const problem = { points, parameters: 4, lower: [0, Math.log(1e-4), Math.log(1e-4), 0.02], upper: [1, Math.log(200), Math.log(200), 1], stepLimit: [Infinity, 3, 3, Infinity], evaluate }
+  const problem = { points, parameters: 4, lower: [0, log(1e-4), log(1e-4), 0.02], upper: [1, log(200), log(200), 1], stepLimit: [Infinity, 3, 3, Infinity], evaluate }
   const depletion = Math.min(1, Math.max(0.05, 1 - ratio[0]!))
-  const fits = STARTS.map(([share, quick, reluctant]) => fitLeastSquares(problem, [share!, Math.log(quick!), Math.log(reluctant!), depletion], SEARCH))
+  const fits = STARTS.map(([share, quick, reluctant]) => fitLeastSquares(problem, [share!, log(quick!), log(reluctant!), depletion], SEARCH))
   const best = fits.reduce((least, one) => one.chi2 < least.chi2 ? one : least)
   CURVES['site-kinds'](best.parameters, times, curve, by)
   // All rates scaled together: the sum of the derivatives by their logarithms is t·∂R/∂t.

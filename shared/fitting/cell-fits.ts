@@ -1,4 +1,5 @@
 /** Each cell fitted alone, and what the cells have in common: the cell as a random effect, in two stages. */
+import { exp, log } from './elementary'
 import type { CellPoint, ConditionData } from '../recordings/types'
 import { studentQuantile975 } from '../walk/normal'
 import { fitCondition, type RecoveryFit } from './fit'
@@ -41,11 +42,11 @@ function conditionOfCell(condition: ConditionData, cell: string, points: readonl
 const usable = (fit: RecoveryFit): boolean => fit.converged && fit.parameters.every(one => !one.atBound)
 
 function overCells(fits: readonly RecoveryFit[], index: number): CellsParameter {
-  const { name, unit } = fits[0]!.parameters[index]!, log = unit === 's', n = fits.length
-  const scaled = fits.map(({ parameters }) => log ? Math.log(parameters[index]!.value) : parameters[index]!.value)
-  const errors = fits.map(({ parameters }) => (parameters[index]!.se ?? NaN) / (log ? parameters[index]!.value : 1))
-  const mean = scaled.reduce((sum, one) => sum + one, 0) / n, natural = (x: number) => log ? Math.exp(x) : x
-  const value = natural(mean), size = log ? value : 1
+  const { name, unit } = fits[0]!.parameters[index]!, logarithmic = unit === 's', n = fits.length
+  const scaled = fits.map(({ parameters }) => logarithmic ? log(parameters[index]!.value) : parameters[index]!.value)
+  const errors = fits.map(({ parameters }) => (parameters[index]!.se ?? NaN) / (logarithmic ? parameters[index]!.value : 1))
+  const mean = scaled.reduce((sum, one) => sum + one, 0) / n, natural = (x: number) => logarithmic ? exp(x) : x
+  const value = natural(mean), size = logarithmic ? value : 1
   if (n < 2) return { name, unit, value, cells: n, sd: null, between: null, low: null, high: null }
   const variance = scaled.reduce((sum, one) => sum + (one - mean) ** 2, 0) / (n - 1)
   const within = errors.reduce((sum, one) => sum + one * one, 0) / n, half = studentQuantile975(n - 1) * Math.sqrt(variance / n)

@@ -1,4 +1,5 @@
 /** What one fit is held against another with: information criteria, their weights, nested tests. */
+import { exp, log } from './elementary'
 import { chiSquaredAbove, fAbove } from './tails'
 
 /**
@@ -26,8 +27,8 @@ export const knownErrorCriterion = (chi2: number, scale: number, parameters: num
  * @returns AIC, BIC; AICc is null where n ≤ k + 1 leaves it undefined [1]
  */
 export function scatterCriteria(points: number, rss: number, parameters: number): { aic: number, aicc: number | null, bic: number } {
-  const fit = points * Math.log(rss / points), aic = fit + 2 * parameters
-  return { aic, aicc: points > parameters + 1 ? aic + 2 * parameters * (parameters + 1) / (points - parameters - 1) : null, bic: fit + parameters * Math.log(points) }
+  const fit = points * log(rss / points), aic = fit + 2 * parameters
+  return { aic, aicc: points > parameters + 1 ? aic + 2 * parameters * (parameters + 1) / (points - parameters - 1) : null, bic: fit + parameters * log(points) }
 }
 
 /**
@@ -36,7 +37,7 @@ export function scatterCriteria(points: number, rss: number, parameters: number)
  * @returns weight of each [1]
  */
 export function akaikeWeights(criteria: readonly number[]): number[] {
-  const least = Math.min(...criteria), raw = criteria.map(value => Math.exp((least - value) / 2))
+  const least = Math.min(...criteria), raw = criteria.map(value => exp((least - value) / 2))
   const sum = raw.reduce((total, one) => total + one, 0)
   return raw.map(one => one / sum)
 }

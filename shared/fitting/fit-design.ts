@@ -1,4 +1,5 @@
 /** Which parameters a fit has: shared between which curves, free or held, between which bounds. */
+import { log } from './elementary'
 import { UNTOUCHED, type ConditionData } from '../recordings/types'
 import { curveOf, type Curve, type Slot } from './curve-problem'
 import { weightedPoints, type FitNote, type FitRefusal, type WeightedPoints, type Weights } from './point-errors'
@@ -48,7 +49,7 @@ interface Place { place: number, name: ParameterName, bounds: readonly [number, 
 
 function freePlaces({ model, freePlateau, depletion = 'free' }: FitOptions, [first, last]: [number, number]): Place[] {
   const [slowest, fastest] = RATES[model]
-  const tau = [-Math.log(Math.max(fastest, 10 / first)), -Math.log(Math.min(slowest, 0.02 / last))] as const
+  const tau = [-log(Math.max(fastest, 10 / first)), -log(Math.min(slowest, 0.02 / last))] as const
   const places: Place[] = []
   if (freePlateau) places.push({ place: PLACE.plateau, name: 'plateau', bounds: PLATEAU })
   if (depletion === 'free') places.push({ place: PLACE.depletion, name: 'depletion', bounds: freePlateau ? [DEPLETION[0], PLATEAU[1]] : DEPLETION })

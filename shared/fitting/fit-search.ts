@@ -1,4 +1,5 @@
 /** From starts to the best fit: many short tries, a few to the end, the best one to its last digits. */
+import { log } from './elementary'
 import { curveProblem, isLogarithmic, placesOf, type Slot } from './curve-problem'
 import type { FitDesign } from './fit-design'
 import { fitLeastSquares, SEARCH, type LeastSquaresFit, type LeastSquaresOptions, type LeastSquaresProblem } from './least-squares'
@@ -41,7 +42,7 @@ export function startOf(design: FitDesign, shape: StartShape): Float64Array {
     if (slot.place === PLACE.plateau) return Math.max(...slot.curves.map(curve => design.curves[curve]!.ratios.at(-1)!))
     if (slot.place === PLACE.depletion) return lacking(design, slot)
     if (slot.place === PLACE.fastShare) return shape.share
-    return Math.log(last * (slot.place === PLACE.logTauFast ? shape.tauFast : shape.tauSlow))
+    return log(last * (slot.place === PLACE.logTauFast ? shape.tauFast : shape.tauSlow))
   })
 }
 
@@ -58,10 +59,10 @@ export function startsFromOne(two: FitDesign, one: FitDesign, x: Float64Array): 
     placesOf(curve, x, at)
     return at
   })
-  const [early, late] = [Math.log(two.spanS[0] / 3), Math.log(two.spanS[1] * 8)]
+  const [early, late] = [log(two.spanS[0] / 3), log(two.spanS[1] * 8)]
   const splits: ((tau: number) => { share: number, fast: number, slow: number, more: number })[] = [
-    tau => ({ share: 0.5, fast: tau - Math.log(1.5), slow: tau + Math.log(1.5), more: 1 }),
-    tau => ({ share: 0.9, fast: tau - Math.log(4), slow: tau + Math.log(4), more: 1 }),
+    tau => ({ share: 0.5, fast: tau - log(1.5), slow: tau + log(1.5), more: 1 }),
+    tau => ({ share: 0.9, fast: tau - log(4), slow: tau + log(4), more: 1 }),
     tau => ({ share: 0.4, fast: early, slow: tau, more: 1 / 0.6 }),
     tau => ({ share: 0.95, fast: tau, slow: late, more: 1 }),
   ]

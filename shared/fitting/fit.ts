@@ -1,4 +1,5 @@
 /** Fits of one or two exponentials to one condition, or to several that share parameters: values, errors, intervals, criterion, warnings. */
+import { exp } from './elementary'
 import { studentQuantile975 } from '../walk/normal'
 import type { ConditionData } from '../recordings/types'
 import type { CellVariance } from './cell-covariance'
@@ -101,7 +102,7 @@ function estimate(design: FitDesign, first: FoundFit, dof: number, scaleOf: (chi
 function parametersOf({ slots }: FitDesign, { found, intervals, errors }: Estimated): FitParameter[] {
   return slots.map((slot, j) => {
     const log = isLogarithmic(slot), x = found.parameters[j]!, { low, high } = intervals[j]!
-    const natural = (value: number | null) => value === null ? null : log ? Math.exp(value) : value
+    const natural = (value: number | null) => value === null ? null : log ? exp(value) : value
     const value = natural(x)!, se = log ? value * errors[j]! : errors[j]!
     return { name: slot.name, unit: log ? 's' : '1', value, se: Number.isFinite(se) ? se : null, low: natural(low), high: natural(high), atBound: found.atBound[j]!, group: slot.group }
   })

@@ -237,7 +237,7 @@ export function fitLeastSquares(problem: LeastSquaresProblem, start: ArrayLike<n
       continue
     }
     const gain = predicted > 0 ? decrease / predicted : 1
-    damping = Math.max(1e-300, damping * Math.max(1 / 5, 1 - (2 * gain - 1) ** 3))
+    damping = Math.max(1e-300, damping * Math.max(1 / 5, 1 - (2 * gain - 1) * (2 * gain - 1) * (2 * gain - 1)))
     growth = 2
     linear = search.linearise()
   }

@@ -1,4 +1,5 @@
 /** One or two exponentials of recovery, R(t) = plateau − depletion·G(t), with derivatives; times in s. */
+import { exp, log } from './elementary'
 
 export type ExponentialModel = 'one' | 'two'
 export type ParameterName = 'plateau' | 'depletion' | 'fastShare' | 'tauS' | 'tauFastS' | 'tauSlowS'
@@ -16,8 +17,8 @@ export const PLACES = 5
  */
 export function recoveryAt(at: ArrayLike<number>, timeS: number, by?: Float64Array | null): number {
   const plateau = at[0]!, depletion = at[1]!, share = at[2]!
-  const fastAge = timeS * Math.exp(-at[3]!), fast = Math.exp(-fastAge)
-  const slowAge = share === 1 ? 0 : timeS * Math.exp(-at[4]!), slow = share === 1 ? 0 : Math.exp(-slowAge)
+  const fastAge = timeS * exp(-at[3]!), fast = exp(-fastAge)
+  const slowAge = share === 1 ? 0 : timeS * exp(-at[4]!), slow = share === 1 ? 0 : exp(-slowAge)
   const empty = share * fast + (1 - share) * slow
   if (by) {
     by[0] = 1
@@ -42,6 +43,6 @@ export function recoveryCurve(values: readonly NamedValue[], timesS: readonly nu
   const of = (name: ParameterName) => values.find(one => one.name === name)?.value
   const plateau = of('plateau') ?? 1, tau = of('tauS') ?? of('tauFastS')
   if (tau === undefined) throw new RangeError('A time constant is wanted.')
-  const at = [plateau, of('depletion') ?? plateau, of('fastShare') ?? 1, Math.log(tau), Math.log(of('tauSlowS') ?? tau)]
+  const at = [plateau, of('depletion') ?? plateau, of('fastShare') ?? 1, log(tau), log(of('tauSlowS') ?? tau)]
   return timesS.map(time => recoveryAt(at, time))
 }

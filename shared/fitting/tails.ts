@@ -1,4 +1,5 @@
 /** Tails of the chi-squared and F laws, and quantiles of the first. */
+import { exp, log, log1p } from './elementary'
 
 /** Lanczos' approximation (coefficients of Godfrey, g = 607/128), to about 1e-15. */
 const LANCZOS = [0.9999999999999971, 57.15623566586292, -59.59796035547549, 14.136097974741746, -0.4919138160976202, 0.00003399464998481189, 0.00004652362892704858, -0.00009837447530487956, 0.0001580887032249125, -0.00021026444172410488, 0.00021743961811521265, -0.0001643181065367639, 0.00008441822398385275, -0.000026190838401581408, 0.0000036899182659531625]
@@ -12,7 +13,7 @@ export function logGamma(x: number): number {
   const shifted = x + 607 / 128 - 0.5
   let sum = LANCZOS[0]!
   for (let k = 1; k < LANCZOS.length; k++) sum += LANCZOS[k]! / (x - 1 + k)
-  return (x - 0.5) * Math.log(shifted) - shifted + Math.log(sum * Math.sqrt(2 * Math.PI))
+  return (x - 0.5) * log(shifted) - shifted + log(sum * Math.sqrt(2 * Math.PI))
 }
 
 const TINY = 1e-300
@@ -20,7 +21,7 @@ const TINY = 1e-300
 /** Upper regularised incomplete gamma function: series below a + 1, continued fraction above (Abramowitz & Stegun 6.5.29, 6.5.31). */
 function gammaAbove(a: number, x: number): number {
   if (x <= 0) return 1
-  const front = Math.exp(a * Math.log(x) - x - logGamma(a))
+  const front = exp(a * log(x) - x - logGamma(a))
   if (x < a + 1) {
     let term = 1 / a, sum = term
     for (let k = 1; k < 10_000 && term > sum * 1e-17; k++) {
@@ -85,7 +86,7 @@ function betaFraction(x: number, a: number, b: number): number {
 
 function betaBelow(x: number, a: number, b: number): number {
   if (x <= 0 || x >= 1) return x <= 0 ? 0 : 1
-  const front = Math.exp(logGamma(a + b) - logGamma(a) - logGamma(b) + a * Math.log(x) + b * Math.log1p(-x))
+  const front = exp(logGamma(a + b) - logGamma(a) - logGamma(b) + a * log(x) + b * log1p(-x))
   return x < (a + 1) / (a + b + 2) ? front * betaFraction(x, a, b) / a : 1 - front * betaFraction(1 - x, b, a) / b
 }
 

@@ -1,4 +1,5 @@
 /** Mean recovery curves of the explanations, with derivatives; the last place of each vector is the depletion d, R = 1 − d·G. */
+import { exp, expm1 } from '../elementary'
 import { limitedStoreCurve } from './limited-store'
 
 /**
@@ -9,9 +10,9 @@ export type Curve = (at: Float64Array, times: Float64Array, ratio: Float64Array,
 
 /** One exponential: [ln k, d]. */
 const oneKind: Curve = (at, times, ratio, by) => {
-  const k = Math.exp(at[0]!), d = at[1]!
+  const k = exp(at[0]!), d = at[1]!
   for (let i = 0; i < times.length; i++) {
-    const q = k * times[i]!, empty = Math.exp(-q)
+    const q = k * times[i]!, empty = exp(-q)
     ratio[i] = 1 - d * empty
     if (!by) continue
     by[2 * i] = d * q * empty
@@ -21,9 +22,9 @@ const oneKind: Curve = (at, times, ratio, by) => {
 
 /** Two exponentials: [share w of the first, ln k₁, ln k₂, d]. */
 const siteKinds: Curve = (at, times, ratio, by) => {
-  const w = at[0]!, k1 = Math.exp(at[1]!), k2 = Math.exp(at[2]!), d = at[3]!
+  const w = at[0]!, k1 = exp(at[1]!), k2 = exp(at[2]!), d = at[3]!
   for (let i = 0; i < times.length; i++) {
-    const t = times[i]!, first = Math.exp(-k1 * t), second = Math.exp(-k2 * t), empty = w * first + (1 - w) * second
+    const t = times[i]!, first = exp(-k1 * t), second = exp(-k2 * t), empty = w * first + (1 - w) * second
     ratio[i] = 1 - d * empty
     if (!by) continue
     by[4 * i] = -d * (first - second)
@@ -35,10 +36,10 @@ const siteKinds: Curve = (at, times, ratio, by) => {
 
 /** Two kinds of site of which the first stimulus may empty unequal parts: as `siteKinds`, with ln of the odds by which the share seen differs before d. */
 const siteKindsUneven: Curve = (at, times, ratio, by) => {
-  const w = at[0]!, k1 = Math.exp(at[1]!), k2 = Math.exp(at[2]!), q = Math.exp(at[3]!), d = at[4]!
+  const w = at[0]!, k1 = exp(at[1]!), k2 = exp(at[2]!), q = exp(at[3]!), d = at[4]!
   const below = w * q + 1 - w, seen = w * q / below, bySeen = q / (below * below), byOdds = w * (1 - w) * q / (below * below)
   for (let i = 0; i < times.length; i++) {
-    const t = times[i]!, first = Math.exp(-k1 * t), second = Math.exp(-k2 * t), empty = seen * first + (1 - seen) * second
+    const t = times[i]!, first = exp(-k1 * t), second = exp(-k2 * t), empty = seen * first + (1 - seen) * second
     ratio[i] = 1 - d * empty
     if (!by) continue
     by[5 * i] = -d * (first - second) * bySeen
@@ -51,15 +52,15 @@ const siteKindsUneven: Curve = (at, times, ratio, by) => {
 
 /** A rate that falls back to a resting part r: [ln k, r, ln τc, d], H = rt + (1 − r)τc(1 − e^(−t/τc)). */
 const decliningDrive: Curve = (at, times, ratio, by) => {
-  const k = Math.exp(at[0]!), r = at[1]!, tau = Math.exp(at[2]!), d = at[3]!
+  const k = exp(at[0]!), r = at[1]!, tau = exp(at[2]!), d = at[3]!
   for (let i = 0; i < times.length; i++) {
-    const t = times[i]!, x = t / tau, q = -Math.expm1(-x), drive = r * t + (1 - r) * tau * q, empty = Math.exp(-k * drive)
+    const t = times[i]!, x = t / tau, q = -expm1(-x), drive = r * t + (1 - r) * tau * q, empty = exp(-k * drive)
     ratio[i] = 1 - d * empty
     if (!by) continue
     const slope = d * k * empty
     by[4 * i] = slope * drive
     by[4 * i + 1] = slope * (t - tau * q)
-    by[4 * i + 2] = slope * (1 - r) * tau * (q - x * Math.exp(-x))
+    by[4 * i + 2] = slope * (1 - r) * tau * (q - x * exp(-x))
     by[4 * i + 3] = -empty
   }
 }
@@ -67,15 +68,15 @@ const decliningDrive: Curve = (at, times, ratio, by) => {
 /** φ(x) = (1 − e^(−x))/x and its derivative; a series near 0, where the difference would lose digits. */
 function phi(x: number): [value: number, slope: number] {
   if (x < 1e-3) return [1 - x / 2 + x * x / 6 - x * x * x / 24, -1 / 2 + x / 3 - x * x / 8 + x * x * x / 30]
-  const value = -Math.expm1(-x) / x
-  return [value, (Math.exp(-x) - value) / x]
+  const value = -expm1(-x) / x
+  return [value, (exp(-x) - value) / x]
 }
 
 /** Two steps one after the other, symmetrical in their rates: [ln k₁, ln k₂, d]. */
 const twoStep: Curve = (at, times, ratio, by) => {
-  const firstSlower = at[0]! <= at[1]!, a = Math.exp(firstSlower ? at[0]! : at[1]!), b = Math.exp(firstSlower ? at[1]! : at[0]!), d = at[2]!
+  const firstSlower = at[0]! <= at[1]!, a = exp(firstSlower ? at[0]! : at[1]!), b = exp(firstSlower ? at[1]! : at[0]!), d = at[2]!
   for (let i = 0; i < times.length; i++) {
-    const t = times[i]!, slow = Math.exp(-a * t), [value, slope] = phi((b - a) * t), empty = slow * (1 + a * t * value)
+    const t = times[i]!, slow = exp(-a * t), [value, slope] = phi((b - a) * t), empty = slow * (1 + a * t * value)
     ratio[i] = 1 - d * empty
     if (!by) continue
     const byB = a * t * t * slow * slope, byA = -t * empty + slow * t * value - byB
@@ -87,20 +88,20 @@ const twoStep: Curve = (at, times, ratio, by) => {
 
 const NODE_STEP = 0.25
 const NODES = Float64Array.from({ length: 49 }, (_, j) => -6 + NODE_STEP * j)
-const NODE_WEIGHTS = NODES.map(x => NODE_STEP * Math.exp(-x * x / 2) / Math.sqrt(2 * Math.PI))
+const NODE_WEIGHTS = NODES.map(x => NODE_STEP * exp(-x * x / 2) / Math.sqrt(2 * Math.PI))
 const FACTORS = new Float64Array(NODES.length)
 /** Below this SD of ln k the derivative by its variance is taken from its limit. */
 const NARROW = 0.02
 
 /** Log-normal spread of one rate: [ln median k, variance v of ln k, d]. The trapezoid rule on 49 nodes errs by less than 1e-5 for SD ≤ 4. */
 const spread: Curve = (at, times, ratio, by) => {
-  const k = Math.exp(at[0]!), sd = Math.sqrt(Math.max(0, at[1]!)), d = at[2]!
-  for (let j = 0; j < NODES.length; j++) FACTORS[j] = k * Math.exp(sd * NODES[j]!)
+  const k = exp(at[0]!), sd = Math.sqrt(Math.max(0, at[1]!)), d = at[2]!
+  for (let j = 0; j < NODES.length; j++) FACTORS[j] = k * exp(sd * NODES[j]!)
   for (let i = 0; i < times.length; i++) {
     const t = times[i]!
     let empty = 0, byRate = 0, byVariance = 0
     for (let j = 0; j < NODES.length; j++) {
-      const x = NODES[j]!, q = FACTORS[j]! * t, part = NODE_WEIGHTS[j]! * Math.exp(-q)
+      const x = NODES[j]!, q = FACTORS[j]! * t, part = NODE_WEIGHTS[j]! * exp(-q)
       empty += part
       byRate -= q * part
       byVariance += sd < NARROW ? x * x * (q * q - q) * part / 2 : -x * q * part / (2 * sd)
@@ -123,7 +124,7 @@ const spread: Curve = (at, times, ratio, by) => {
 export function spreadVariance(median: number, variance: number, timeS: number): number {
   let mean = 0, square = 0
   for (let j = 0; j < NODES.length; j++) {
-    const empty = Math.exp(-median * Math.exp(Math.sqrt(variance) * NODES[j]!) * timeS)
+    const empty = exp(-median * exp(Math.sqrt(variance) * NODES[j]!) * timeS)
     mean += NODE_WEIGHTS[j]! * empty
     square += NODE_WEIGHTS[j]! * empty * empty
   }

@@ -1,4 +1,5 @@
 /** Candidates and conditions as the document carries them: values, curves for drawing, residuals. */
+import { exp, log } from '../elementary'
 import type { WeighCandidate, WeighUp } from '../../schemas/weigh-up'
 import { akaikeWeights } from '../criteria'
 import { EXPLANATION_NAMES } from './explanations'
@@ -16,7 +17,7 @@ const EXCLUDED = 2
 /** Times for drawing: even on a logarithmic axis, a little beyond the points on both sides [s]. */
 function gridOf(timesS: Float64Array): number[] {
   const above = timesS.filter(time => time > 0), first = (above[0] ?? 1) / BEYOND, last = (above[above.length - 1] ?? 1) * BEYOND
-  return Array.from({ length: GRID_POINTS }, (_, i) => first * (last / first) ** (i / (GRID_POINTS - 1)))
+  return Array.from({ length: GRID_POINTS }, (_, i) => first * exp(log(last / first) * i / (GRID_POINTS - 1)))
 }
 
 const finite = (value: number): number | null => Number.isFinite(value) ? value : null

@@ -1,4 +1,5 @@
 /** The explanations that a weigh-up compares: their parameters, bounds, first guesses and names. */
+import { log } from '../elementary'
 import { CURVES, type Curve } from './curves'
 
 export const EXPLANATIONS = ['one-kind', 'site-kinds', 'limited-store', 'declining-drive', 'two-step', 'spread'] as const
@@ -88,5 +89,5 @@ export const REFERENCE_LAST_S = 51.2
  */
 export function boundsOf(parameter: ShapeParameter, firstS: number, lastS: number): [lower: number, upper: number] {
   const [lower, upper] = parameter.unit === 's' ? [firstS, 5 * lastS] : [parameter.lower, parameter.upper]
-  return parameter.log ? [Math.log(lower), Math.log(upper)] : [lower, upper]
+  return parameter.log ? [log(lower), log(upper)] : [lower, upper]
 }

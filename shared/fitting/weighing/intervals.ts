@@ -1,4 +1,5 @@
 /** Values of a candidate in their own units, with profile intervals, correlations, and what the intervals cannot resolve. */
+import { exp, log } from '../elementary'
 import { studentQuantile975 } from '../../walk/normal'
 import { covarianceOf, fitLeastSquares, SEARCH } from '../least-squares'
 import { profileBounds } from '../profile-intervals'
@@ -34,7 +35,7 @@ const SMALL_SHARE = 0.15
 function natural(found: Found, { place }: Slot, value: number, unitS: number): number {
   const parameter = found.model.parameters[place]
   if (!parameter) return value
-  const own = parameter.log ? Math.exp(value) : value
+  const own = parameter.log ? exp(value) : value
   return parameter.unit === '1/s' ? own / unitS : parameter.unit === 's' ? own * unitS : own
 }
 
@@ -47,10 +48,10 @@ function boundOf(found: Found, i: number): 'lower' | 'upper' | null {
 function unresolvedBy(found: Found, i: number, data: WeighData): string | null {
   const slot = found.layout.slots[i]!, parameter = found.model.parameters[slot.place], value = found.parameters[i]!
   if (!parameter) return value >= 1 - 1e-7 ? 'The depletion stands at 1; the fit uses it to adjust the first point.' : null
-  const time = parameter.unit === '1/s' ? Math.exp(-value) : parameter.unit === 's' ? Math.exp(value) : null
+  const time = parameter.unit === '1/s' ? exp(-value) : parameter.unit === 's' ? exp(value) : null
   if (time !== null && time > FAR * data.last) return 'It is slower than these intervals reach.'
   if (time !== null && time < data.first / FAR) return 'It is faster than the shortest interval shows.'
-  const quick = found.model.id === 'site-kinds' && slot.place === 0 && value < SMALL_SHARE && found.parameters[1]! > Math.log(FAR / data.first)
+  const quick = found.model.id === 'site-kinds' && slot.place === 0 && value < SMALL_SHARE && found.parameters[1]! > log(FAR / data.first)
   if (quick) return 'A small share of very quick sites only adjusts the first point.'
   return boundOf(found, i) ? 'It stands on the bound of what is searched.' : null
 }

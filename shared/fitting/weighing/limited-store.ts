@@ -2,6 +2,7 @@
  * Recovery from a store of able vesicles that is used up, beside an ample one: dE/dt = −E(k₁S/S₀ + k₂), dS/dt = −E·k₁S/S₀ per site.
  * With v = −ln(S/S₀) the system has a closed form E(v), and t(v) is one integral: no differential equation is stepped.
  */
+import { exp, expm1 } from '../elementary'
 
 /** Ten-point Gauss–Legendre rule on (−1, 1): the positive half (Abramowitz & Stegun, table 25.4). */
 const HALF = [0.1488743389816312, 0.4333953941292472, 0.6794095682990244, 0.8650633666889845, 0.9739065285171717]
@@ -27,9 +28,9 @@ class Walk {
   readonly sums = new Float64Array(4)
 
   begin(at: Float64Array): void {
-    this.k1 = Math.exp(at[0]!)
-    this.k2 = Math.exp(at[1]!)
-    this.s0 = Math.exp(at[2]!)
+    this.k1 = exp(at[0]!)
+    this.k2 = exp(at[1]!)
+    this.s0 = exp(at[2]!)
     this.d = at[3]!
     this.c = this.s0 * this.k2 / this.k1
     this.v = this.t = 0
@@ -37,7 +38,7 @@ class Walk {
   }
 
   empty(v: number): number {
-    return this.d + this.s0 * Math.expm1(-v) - this.c * v
+    return this.d + this.s0 * expm1(-v) - this.c * v
   }
 
   /** dv/dt. */
@@ -56,7 +57,7 @@ class Walk {
     const half = (to - this.v) / 2, middle = (to + this.v) / 2, { k1, k2, s0, d, sums } = this
     for (let j = 0; j < 10; j++) {
       const u = middle + half * X[j]!, f = this.speed(u), weight = half * W[j]! / (f * f)
-      sums[0]! += weight * k1 * (d / s0 + Math.expm1(-u))
+      sums[0]! += weight * k1 * (d / s0 + expm1(-u))
       sums[1]! -= weight * k2 * u
       sums[2]! -= weight * k1 * d / s0
       sums[3]! += weight * k1 / s0
@@ -70,7 +71,7 @@ class Walk {
       const left = time - this.t, empty = this.empty(this.v)
       if (!(empty > NOTHING_LEFT * this.d)) return false
       if (left <= 0) return true
-      const cap = Math.min(this.v > STORE_EMPTY ? Infinity : LONGEST, PART * empty / (this.s0 * Math.exp(-this.v) + this.c))
+      const cap = Math.min(this.v > STORE_EMPTY ? Infinity : LONGEST, PART * empty / (this.s0 * exp(-this.v) + this.c))
       let to = this.v + Math.min(left * this.speed(this.v), cap), taken = this.duration(to)
       // A remainder below the last digit of v, or of the time, is none.
       if (!(to > this.v) || !(taken > 0) || left <= 1e-14 * time) {
@@ -113,10 +114,10 @@ export function limitedStoreCurve(at: Float64Array, times: Float64Array, ratio: 
     const { v, s0, c, sums } = walk
     ratio[i] = 1 - walk.empty(v)
     if (!by) continue
-    const speed = walk.speed(v), slope = (s0 * Math.exp(-v) + c) * speed
+    const speed = walk.speed(v), slope = (s0 * exp(-v) + c) * speed
     by[4 * i] = slope * sums[0]! - c * v
     by[4 * i + 1] = slope * sums[1]! + c * v
-    by[4 * i + 2] = slope * sums[2]! - s0 * Math.expm1(-v) + c * v
+    by[4 * i + 2] = slope * sums[2]! - s0 * expm1(-v) + c * v
     by[4 * i + 3] = slope * sums[3]! - 1
   }
 }

@@ -1,4 +1,5 @@
 /** Cells drawn again with replacement: how often the same explanation leads, and how far its values move. */
+import { exp } from '../elementary'
 import type { WeighResample } from '../../schemas/weigh-up'
 import { studentQuantile975 } from '../../walk/normal'
 import { Stream, seedWords, stateOf } from '../../walk/streams'
@@ -61,7 +62,7 @@ class Tally {
       const mean = column.reduce((sum, one) => sum + one, 0) / n, sd = Math.sqrt(column.reduce((sum, one) => sum + (one - mean) ** 2, 0) / (n - 1))
       const half = sd * Math.sqrt(cells / (cells - 1)) * studentQuantile975(dof), parameter = this.lead.model.parameters[slot.place], { lower, upper } = this.lead.layout
       const natural = (value: number) => {
-        const own = Math.min(upper[i]!, Math.max(lower[i]!, value)), plain = parameter?.log ? Math.exp(own) : own
+        const own = Math.min(upper[i]!, Math.max(lower[i]!, value)), plain = parameter?.log ? exp(own) : own
         return parameter?.unit === '1/s' ? plain / this.weighing.plain.unitS : parameter?.unit === 's' ? plain * this.weighing.plain.unitS : plain
       }
       return { low: natural(this.lead.parameters[i]! - half), high: natural(this.lead.parameters[i]! + half) }

@@ -1,4 +1,5 @@
 /** The staged search of a weigh-up: untouched conditions, one manipulation at a time, then every combination that can still win. */
+import { log } from '../elementary'
 import { fitLeastSquares, SEARCH, type LeastSquaresOptions } from '../least-squares'
 import { boundsOf, MODELS, type Explanation, type ExplanationModel } from './explanations'
 import { JointProblem, layOut, type Changes, type Layout, type Slot, type TypedDepletion } from './joint-problem'
@@ -52,7 +53,7 @@ export class ExplanationSearch {
   private guesses(): Map<string, number>[] {
     return this.model.starts.map(start => new Map(start.map((value, place) => {
       const parameter = this.model.parameters[place]!, [lower, upper] = boundsOf(parameter, this.data.first, this.data.last)
-      return [slotKey({ place, manipulation: null, protocol: null }), Math.min(upper, Math.max(lower, parameter.log ? Math.log(value) : value))]
+      return [slotKey({ place, manipulation: null, protocol: null }), Math.min(upper, Math.max(lower, parameter.log ? log(value) : value))]
     })))
   }
 

@@ -1,4 +1,5 @@
 /** What would settle a tie: which added condition would part the explanations that stand, by their own fitted curves. */
+import { log } from '../elementary'
 import type { WeighSettle } from '../../schemas/weigh-up'
 import { EXPLANATION_NAMES, MODELS, SPOKEN_AS_MANY, type Explanation } from './explanations'
 import { JointProblem, placeName } from './joint-problem'
@@ -25,7 +26,7 @@ function planned({ truth, what, place, factor }: Design, { data, typed }: Weighi
   const { found } = truth, at = data.conditions.findIndex(one => one.manipulation === data.untouched), pattern = data.conditions[at]!
   const problem = new JointProblem(found.model, data.conditions, found.layout, typed), local = Float64Array.from(problem.localOf(found.parameters, at)), last = local.length - 1
   if (what === 'short-step') local[last] = SHORT_DEPLETION
-  else local[place!] = found.model.parameters[place!]!.log ? local[place!]! + Math.log(factor) : local[place!]! * factor
+  else local[place!] = found.model.parameters[place!]!.log ? local[place!]! + log(factor) : local[place!]! * factor
   const ratio = new Float64Array(pattern.times.length)
   found.model.curve(local, pattern.times, ratio, null)
   const cells = pattern.n.some(n => n > 0) ? median([...pattern.n].filter(n => n > 0)) : USUAL_CELLS

@@ -1,4 +1,5 @@
 /** Invented cells of a known truth, with the noise of a bench: what calibrations and plans draw from. */
+import { log } from '../elementary'
 import { meansOfCells } from '../../recordings/conditions'
 import type { CellPoint, ConditionData } from '../../recordings/types'
 import type { Stream } from '../../walk/streams'
@@ -38,11 +39,11 @@ function cellCurve(plan: SimulatedCondition, timesS: Float64Array, depletion: nu
   const ratio = new Float64Array(timesS.length)
   if (plan.betweenCells) {
     const [median, variance] = plan.parameters as [number, number]
-    MODELS['one-kind'].curve(Float64Array.of(Math.log(median) + Math.sqrt(variance) * rateDeviate, depletion), timesS, ratio, null)
+    MODELS['one-kind'].curve(Float64Array.of(log(median) + Math.sqrt(variance) * rateDeviate, depletion), timesS, ratio, null)
     return ratio
   }
   const model = MODELS[plan.explanation], shift = noise.rateSd * rateDeviate
-  const at = Float64Array.from([...plan.parameters.map((value, i) => model.parameters[i]!.log ? Math.log(value) + (model.parameters[i]!.unit === '1/s' ? shift : 0) : value), depletion])
+  const at = Float64Array.from([...plan.parameters.map((value, i) => model.parameters[i]!.log ? log(value) + (model.parameters[i]!.unit === '1/s' ? shift : 0) : value), depletion])
   model.curve(at, timesS, ratio, null)
   return ratio
 }

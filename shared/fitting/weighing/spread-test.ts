@@ -1,4 +1,5 @@
 /** Whether cells differ as a spread of rates between cells would have it: judged by the SD between cells, not by the curve. */
+import { exp } from '../elementary'
 import { spreadVariance } from './curves'
 import { JointProblem, type TypedDepletion } from './joint-problem'
 import type { WeighData } from './prepare'
@@ -32,7 +33,7 @@ export function testSpread(spread: Found | undefined, data: WeighData, typed: Ty
       const sd = one.sd[i]!, n = one.n[i]!
       if (!Number.isFinite(sd) || !(n >= 2)) continue
       seen += (n - 1) * sd * sd
-      predicted += (n - 1) * depletion ** 2 * spreadVariance(Math.exp(logMedian), variance, one.times[i]!)
+      predicted += (n - 1) * depletion ** 2 * spreadVariance(exp(logMedian), variance, one.times[i]!)
     }
   })
   if (seen === 0 && predicted === 0) return null

@@ -1,4 +1,5 @@
 /** The verdict rule: when an explanation is preferred, and when nothing can be told. Its error rates were measured; `npm run calibrate` measures them again. */
+import { log } from '../elementary'
 import { excessScatter, knownErrorCriterion } from '../criteria'
 import { chiSquaredAbove } from '../tails'
 import type { Explanation } from './explanations'
@@ -57,12 +58,12 @@ export function criterionOf(found: Found, data: WeighData, scale: number): numbe
   const k = found.parameters.length, n = data.points
   if (data.noise.kind !== 'scatter') return knownErrorCriterion(found.chi2, scale, k)
   const counted = k + 1
-  return n * Math.log(Math.max(found.chi2, 1e-300) / n) + 2 * counted + (n > counted + 1 ? 2 * counted * (counted + 1) / (n - counted - 1) : Infinity)
+  return n * log(Math.max(found.chi2, 1e-300) / n) + 2 * counted + (n > counted + 1 ? 2 * counted * (counted + 1) / (n - counted - 1) : Infinity)
 }
 
 /** What a richer fit gains over a smaller one, in units of χ²/s. */
 function gain(smaller: Found, richer: Found, data: WeighData, scale: number): number {
-  return data.noise.kind === 'scatter' ? data.points * Math.log(smaller.chi2 / Math.max(richer.chi2, 1e-300)) : (smaller.chi2 - richer.chi2) / scale
+  return data.noise.kind === 'scatter' ? data.points * log(smaller.chi2 / Math.max(richer.chi2, 1e-300)) : (smaller.chi2 - richer.chi2) / scale
 }
 
 function rank(found: ReadonlyMap<Explanation, readonly Found[]>, data: WeighData): { ranked: Ranked[], scale: number } {
