@@ -4,9 +4,11 @@ import type { BothFits } from '#shared/fitting/fit-both'
 import { fitBySettings, type FitSettings } from '#shared/fitting/kept-fit'
 import type { FitRefusal } from '#shared/fitting/point-errors'
 import type { ExponentialModel } from '#shared/fitting/recovery-model'
+import { growthSteps } from '#shared/fitting/weighing/growth'
+import { sensitivitySteps } from '#shared/fitting/weighing/sensitivity'
 import { weighUpSteps, type WeighProgress } from '#shared/fitting/weighing/weigh-up'
 import type { ConditionData } from '#shared/recordings/types'
-import type { WeighSettings, WeighUp } from '#shared/schemas/weigh-up'
+import type { WeighGrowth, WeighSensitivity, WeighSettings, WeighUp } from '#shared/schemas/weigh-up'
 
 const REPORT_EVERY_MS = 100
 
@@ -27,6 +29,22 @@ export class FittingDesk {
       heard = now
       if (!await report(step.value)) return null
     }
+  }
+
+  /** How the verdict grew with the conditions. */
+  growth(conditions: ConditionData[], settings: WeighSettings): WeighGrowth {
+    const steps = growthSteps({ conditions, settings })
+    let step = steps.next()
+    while (!step.done) step = steps.next()
+    return step.value
+  }
+
+  /** The verdict under other depletions and unequal emptying. */
+  sensitivity(conditions: ConditionData[], settings: WeighSettings): WeighSensitivity | FitRefusal {
+    const steps = sensitivitySteps({ conditions, settings })
+    let step = steps.next()
+    while (!step.done) step = steps.next()
+    return step.value
   }
 
   cells(data: ConditionData, model: ExponentialModel, freePlateau: boolean): CellsFit | FitRefusal {
