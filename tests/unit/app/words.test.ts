@@ -55,7 +55,7 @@ describe('the bench’s home', () => {
     expect(plusMinus({ value: null, low: null, high: null })).toEqual({ value: '–', error: '' })
   })
   it('leads a change to what changed', () => {
-    const change = { kind: 'run-saved', who: 'Tomasz Birk', at: '', scenarioId: 's', title: 'Control', revision: null, runId: 'r9', runNumber: 9, binned: null } as const
+    const change = { kind: 'run-saved', who: 'Tomasz Birk', at: '', scenarioId: 's', title: 'Control', revision: null, runId: 'r9', runNumber: 9, recordingId: null, weighUpId: null, binned: null } as const
     expect(changeWords(change)).toEqual({ does: 'saved', link: 'Run 9', to: '/runs/r9', rest: ' of Control' })
   })
   it('groups people by role', () => {
