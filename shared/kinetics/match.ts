@@ -33,7 +33,7 @@ const Z = 1.959963984540054
  * @throws RangeError on a value that is not positive
  */
 export function matchAttachment(medium: Omit<Measured, 'tauS'>, tau: FittedTau, errors: MediumErrors): Matched {
-  const measured = { ...medium, tauS: tau.valueS }, { probability } = attachProbabilityFor(measured)
+  const { diffusionUm2PerS, densityPerUm3, spacingNm } = medium, measured = { diffusionUm2PerS, densityPerUm3, spacingNm, tauS: tau.valueS }, { probability } = attachProbabilityFor(measured)
   const half = tau.lowS !== null && tau.highS !== null
     ? Math.log(tau.highS / tau.lowS) / 2
     : tau.lowS !== null ? Math.log(tau.valueS / tau.lowS) : tau.highS !== null ? Math.log(tau.highS / tau.valueS) : Infinity

@@ -46,6 +46,13 @@ it('reads the messy file as it stands, keeps it, fits it, and gives the file bac
   await page.getByLabel('Reason').fill('artefact')
   await page.getByRole('dialog').getByRole('button', { name: 'Set aside' }).click()
   await eventually(() => words(page.locator('tr.aside').first())).toContain('set aside: artefact')
+  await pier.scenario({ title: 'A base to match' })
+  await page.reload()
+  await page.getByLabel('Medium and ribbon of').selectOption({ label: 'A base to match' })
+  const kinds = page.locator('section').filter({ has: page.getByRole('heading', { name: 'A scenario that matches it' }) }).locator('li')
+  await eventually(() => kinds.count()).toBe(2)
+  // 1/(0.1 · 800 · 0.05 · τ) with the τ of the fast phase, about 0.87 s: near 0.29.
+  expect(await words(kinds.first())).toMatch(/^quick: τ \d+ ms means s 0\.2\d+ \(0\.1\d* to 0\.[45]\d*\)/)
   await page.getByRole('button', { name: 'Keep this fit' }).click()
   await page.getByText(/Kept .* digest [0-9a-f]{8}/).waitFor()
   expectQuiet(seen)

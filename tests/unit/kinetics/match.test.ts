@@ -16,6 +16,9 @@ describe('attachment from a fitted time constant', () => {
     // SCIENCE L-07: rate s/(1 + 0.338795 s); so s′ = x/(1 − 0.338795 x) gives the same rate.
     expect(found.isolated! / (1 + 0.3387953531 * found.isolated!)).toBeCloseTo(0.3, 8)
   })
+  it('takes the medium of a scenario as it is', () => {
+    expect(matchAttachment({ ...MEDIUM, crowding: 'independent' } as typeof MEDIUM, { valueS: 1, lowS: null, highS: 2 }, NONE).probability).toBeCloseTo(0.25, 12)
+  })
   it('says where no attachment probability explains it', () => {
     expect(matchAttachment(MEDIUM, { valueS: 0.1, lowS: 0.09, highS: 0.11 }, NONE)).toMatchObject({ verdict: 'too-fast', isolated: null })
     expect(matchAttachment(MEDIUM, { valueS: 0.24, lowS: 0.2, highS: 0.29 }, NONE).verdict).toBe('edge')
