@@ -5,6 +5,7 @@ import { digestOf } from '../walk/digest'
 import { BOOTSTRAP_RESAMPLES, BOOTSTRAP_SEED } from './bootstrap'
 import { fitBoth, type BothFits } from './fit-both'
 import { WEIGHTS, type FitRefusal } from './point-errors'
+import { FITTING_VERSION } from './version'
 
 /** POST /api/recordings/:recordingId/fits → KeptFit (201): the server fits again; nothing of the result comes from the client. */
 export const FitSettingsSchema = z.strictObject({
@@ -37,5 +38,5 @@ const rounded = (value: number) => Number(value.toPrecision(8))
  */
 export function fitDigest(data: ConditionData, settings: FitSettings, { fits, bootstrap }: BothFits): string {
   const found = fits.map(({ parameters, chi2, dof }) => ({ chi2: rounded(chi2), dof, parameters: parameters.map(({ name, value }) => ({ name, value: rounded(value) })) }))
-  return digestOf({ format: 'moorage-fit', version: 1, data, settings, fits: found, p: bootstrap?.p ?? null })
+  return digestOf({ format: 'moorage-fit', version: 1, engineVersion: FITTING_VERSION, data, settings, fits: found, p: bootstrap?.p ?? null })
 }

@@ -103,6 +103,8 @@ const resample = z.strictObject({
 export const WeighUpSchema = z.strictObject({
   format: z.literal('moorage-weigh-up'),
   version: z.literal(1),
+  /** Version of the program that weighed. */
+  engineVersion: text,
   settings: WeighSettingsSchema,
   conditions: z.array(condition),
   untouched: text,

@@ -83,8 +83,8 @@ it('sends a run whose answer was lost again, and the bench has it once', async (
 
 it('saves nothing under the name of another account that signed in meanwhile, and follows a sign-out in another tab', async () => {
   const { scenarioId } = await pier.scenario(SLOW)
-  const other = await pier.person('Next At The Rig', 'member')
-  const { context, page, leave } = await pier.seat(`/scenarios/${scenarioId}`, { expected: [/status of 401/] })
+  const [first, other] = [await pier.person('First At The Rig', 'member'), await pier.person('Next At The Rig', 'member')]
+  const { context, page, leave } = await pier.seat(`/scenarios/${scenarioId}`, { who: first, expected: [/status of 401/] })
   await go(page, { seed: 'whose', replicates: 400, step: true })
   await page.locator('h1').filter({ hasText: /^\s*[1-9].* of 400/ }).waitFor()
   const [name, value] = other.cookie.split(/=(.*)/s) as [string, string]
@@ -96,7 +96,7 @@ it('saves nothing under the name of another account that signed in meanwhile, an
   await context.addCookies([{ name, value: mine!.value, url: pier.base, httpOnly: true, sameSite: 'Lax' }])
   await page.getByText(/Saved \d\d:\d\d/).waitFor()
   const [saved] = await pier.savedRuns(scenarioId)
-  expect((await pier.run(saved!.runId)).savedBy).toContain('Lead Person')
+  expect((await pier.run(saved!.runId)).savedBy).toContain('First At The Rig')
 
   const second = await context.newPage()
   await visit(second, `${pier.base}/account`)

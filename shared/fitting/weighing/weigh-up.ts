@@ -2,6 +2,7 @@
 import type { ConditionData } from '../../recordings/types'
 import type { WeighSettings, WeighUp } from '../../schemas/weigh-up'
 import { digestOf } from '../../walk/digest'
+import { FITTING_VERSION } from '../version'
 import { pooledSdOf, refusal, type FitRefusal } from '../point-errors'
 import { describeCandidates, describeConditions } from './describe'
 import { doubtsOf } from './doubts'
@@ -152,7 +153,7 @@ export function* weighUpSteps(input: WeighInput): Generator<WeighProgress, Weigh
   const resample = input.settings.resamples > 0 ? yield* resampleCells(weighing, input) : null
   const candidates = describeCandidates(weighing, details)
   const document = rounded({
-    format: 'moorage-weigh-up', version: 1, settings: { ...input.settings, pooledSd: input.settings.pooledSd ?? ready.plain.noise.pooledSd },
+    format: 'moorage-weigh-up', version: 1, engineVersion: FITTING_VERSION, settings: { ...input.settings, pooledSd: input.settings.pooledSd ?? ready.plain.noise.pooledSd },
     conditions: describeConditions(weighing), untouched: ready.plain.untouched, noise: noiseOf(weighing), criterion: ready.data.noise.kind === 'scatter' ? 'aicc' : 'chi2', candidates,
     left: EXPLANATIONS.filter(one => !ready.explanations.includes(one)).map(explanation => ({ explanation, reason: 'It has as many parameters as there are points, or more.' })),
     spread: spreadSentence(weighing), verdict: verdictOf(weighing, candidates), doubts: doubtsOf(weighing, candidates, input), settle, resample, notes: notesOf(weighing, input),
