@@ -4,12 +4,12 @@ import type { KeptMapping, RecordingDetail, RecordingRow, Upload } from '#shared
 import type { ReadingChoices } from '#shared/recordings/choices'
 import { UNNAMED } from '#shared/recordings/conditions'
 import { UNTOUCHED, type ConditionData } from '#shared/recordings/types'
+import { capital } from '#shared/schemas/text'
 import { parseQuantity } from '#shared/units'
 import { recordingSummary } from '~/utils/recordingSeries'
 
 export interface KeepDraft { from: string, keep: boolean, title: string, condition: string, protocol: string, manipulation: string, data: ConditionData, summary: string }
 
-const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1)
 /** A file that names no condition is called after itself. */
 const baseName = (fileName: string) => fileName.replace(/\.[^.]*$/, '').replace(/[_-]+/g, ' ').trim()
 

@@ -11,6 +11,13 @@ import type { ConditionData } from '#shared/recordings/types'
 import type { WeighGrowth, WeighSensitivity, WeighSettings, WeighUp } from '#shared/schemas/weigh-up'
 
 const REPORT_EVERY_MS = 100
+/** Goes through all steps at once. */
+function lastOf<Result>(steps: Generator<unknown, Result>): Result {
+  for (;;) {
+    const step = steps.next()
+    if (step.done) return step.value
+  }
+}
 
 export class FittingDesk {
   both(data: ConditionData, settings: FitSettings): BothFits | FitRefusal {
@@ -33,18 +40,12 @@ export class FittingDesk {
 
   /** How the verdict grew with the conditions. */
   growth(conditions: ConditionData[], settings: WeighSettings): WeighGrowth {
-    const steps = growthSteps({ conditions, settings })
-    let step = steps.next()
-    while (!step.done) step = steps.next()
-    return step.value
+    return lastOf(growthSteps({ conditions, settings }))
   }
 
   /** The verdict under other depletions and unequal emptying. */
   sensitivity(conditions: ConditionData[], settings: WeighSettings): WeighSensitivity | FitRefusal {
-    const steps = sensitivitySteps({ conditions, settings })
-    let step = steps.next()
-    while (!step.done) step = steps.next()
-    return step.value
+    return lastOf(sensitivitySteps({ conditions, settings }))
   }
 
   cells(data: ConditionData, model: ExponentialModel, freePlateau: boolean): CellsFit | FitRefusal {

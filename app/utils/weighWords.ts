@@ -2,9 +2,9 @@
 import { EXPLANATION_NAMES } from '#shared/fitting/weighing/explanations'
 import type { WeighUpRow } from '#shared/schemas/api/weigh-up'
 import type { WeighCandidate, WeighUp } from '#shared/schemas/weigh-up'
+import { capital } from '#shared/schemas/text'
 import { formatNumber } from '#shared/units'
 
-const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1)
 /** “prefers two kinds of site, by 207”, “cannot tell”. */
 export function weighVerdict({ kind, explanation, margin, rule }: WeighUpRow['verdict']): { word: string, kind: string, rest: string } {
   if (kind === 'cannot-tell' || explanation === null) return { word: 'cannot tell', kind: 'caution', rest: '' }

@@ -7,6 +7,7 @@ import type { PointsAsideSchema, RecordingDetail, RecordingEditSchema } from '..
 import type { StaleEdit } from '../../shared/schemas/api/scenario'
 import { badField, problem } from '../utils/problem'
 import { recordEvent } from './audit-trail'
+import { binItem, unbinItem } from './item-bin'
 import { describeRecording } from './recording-rows'
 import type { Reader } from './scenario-rows'
 
@@ -51,19 +52,8 @@ export async function setPointsAside(db: Database, reader: Reader, recordingId: 
   })
 }
 
-export async function binRecording(db: Database, reader: Reader, recordingId: string): Promise<void> {
-  await db.transaction(async (tx) => {
-    const done = await tx.update(recordings).set({ deletedAt: sql`now()`, deletedBy: reader.userId })
-      .where(and(eq(recordings.recordingId, recordingId), sql`${recordings.deletedAt} is null`)).returning({ revision: recordings.revision })
-    if (!done.length) throw problem('not_found')
-    await recordEvent(tx, { kind: 'recording-binned', actorId: reader.userId, benchId: reader.benchId, recordingId })
-  })
-}
-export async function unbinRecording(db: Database, reader: Reader, recordingId: string): Promise<RecordingDetail> {
-  return db.transaction(async (tx) => {
-    const done = await tx.update(recordings).set({ deletedAt: null, deletedBy: null })
-      .where(and(eq(recordings.recordingId, recordingId), sql`${recordings.deletedAt} is not null`)).returning({ revision: recordings.revision })
-    if (done.length) await recordEvent(tx, { kind: 'recording-restored', actorId: reader.userId, benchId: reader.benchId, recordingId })
-    return describeRecording(tx, reader, recordingId)
-  })
-}
+export const binRecording = (db: Database, reader: Reader, recordingId: string) => db.transaction(tx => binItem(tx, reader, 'recording', recordingId))
+export const unbinRecording = (db: Database, reader: Reader, recordingId: string) => db.transaction(async (tx) => {
+  await unbinItem(tx, reader, 'recording', recordingId)
+  return describeRecording(tx, reader, recordingId)
+})

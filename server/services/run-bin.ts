@@ -1,26 +1,17 @@
-/** Runs in and out of the bin. */
-import { and, eq, isNotNull, isNull, sql } from 'drizzle-orm'
-import type { Database } from '../db/client'
+/** Runs in and out of the bin; the audit trail names their scenario and revision too. */
+import { eq } from 'drizzle-orm'
+import type { Database, Handle } from '../db/client'
 import { runs } from '../db/schema'
-import type { RunDetail } from '../../shared/schemas/api/run'
-import { problem } from '../utils/problem'
-import { recordEvent } from './audit-trail'
+import { binItem, unbinItem } from './item-bin'
 import { describeRun } from './run-rows'
 import type { Reader } from './scenario-rows'
 
-export async function binRun(db: Database, reader: Reader, runId: string): Promise<void> {
-  await db.transaction(async (tx) => {
-    const [done] = await tx.update(runs).set({ deletedAt: sql`now()`, deletedBy: reader.userId })
-      .where(and(eq(runs.runId, runId), isNull(runs.deletedAt))).returning({ scenarioId: runs.scenarioId, revision: runs.revision })
-    if (!done) throw problem('not_found')
-    await recordEvent(tx, { kind: 'run-binned', actorId: reader.userId, benchId: reader.benchId, runId, ...done })
-  })
+async function walkedFrom(db: Handle, runId: string) {
+  const [found] = await db.select({ scenarioId: runs.scenarioId, revision: runs.revision }).from(runs).where(eq(runs.runId, runId))
+  return found
 }
-export async function unbinRun(db: Database, reader: Reader, runId: string): Promise<RunDetail> {
-  return db.transaction(async (tx) => {
-    const [done] = await tx.update(runs).set({ deletedAt: null, deletedBy: null })
-      .where(and(eq(runs.runId, runId), isNotNull(runs.deletedAt))).returning({ scenarioId: runs.scenarioId, revision: runs.revision })
-    if (done) await recordEvent(tx, { kind: 'run-restored', actorId: reader.userId, benchId: reader.benchId, runId, ...done })
-    return describeRun(tx, reader, runId)
-  })
-}
+export const binRun = (db: Database, reader: Reader, runId: string) => db.transaction(async tx => binItem(tx, reader, 'run', runId, await walkedFrom(tx, runId)))
+export const unbinRun = (db: Database, reader: Reader, runId: string) => db.transaction(async (tx) => {
+  await unbinItem(tx, reader, 'run', runId, await walkedFrom(tx, runId))
+  return describeRun(tx, reader, runId)
+})

@@ -9,6 +9,7 @@ import { canonicalText } from '../../shared/walk/canonical'
 import { scenarioDigest } from '../../shared/walk/digest'
 import { problem } from '../utils/problem'
 import { recordEvent } from './audit-trail'
+import { binItem, unbinItem } from './item-bin'
 import { describeScenario, type Reader } from './scenario-rows'
 
 export type ScenarioEdit = z.output<typeof ScenarioCreateSchema>
@@ -81,19 +82,8 @@ export async function duplicateScenario(db: Database, reader: Reader, scenarioId
 }
 
 /** Puts into the bin, from where it can be taken back. */
-export async function binScenario(db: Database, reader: Reader, scenarioId: string): Promise<void> {
-  await db.transaction(async (tx) => {
-    const done = await tx.update(scenarios).set({ deletedAt: sql`now()`, deletedBy: reader.userId })
-      .where(and(eq(scenarios.scenarioId, scenarioId), sql`${scenarios.deletedAt} is null`)).returning({ revision: scenarios.revision })
-    if (!done.length) throw problem('not_found')
-    await recordEvent(tx, { kind: 'scenario-binned', actorId: reader.userId, benchId: reader.benchId, scenarioId })
-  })
-}
-export async function unbinScenario(db: Database, reader: Reader, scenarioId: string): Promise<ScenarioDetail> {
-  return db.transaction(async (tx) => {
-    const done = await tx.update(scenarios).set({ deletedAt: null, deletedBy: null })
-      .where(and(eq(scenarios.scenarioId, scenarioId), sql`${scenarios.deletedAt} is not null`)).returning({ revision: scenarios.revision })
-    if (done.length) await recordEvent(tx, { kind: 'scenario-restored', actorId: reader.userId, benchId: reader.benchId, scenarioId })
-    return describeScenario(tx, reader, scenarioId)
-  })
-}
+export const binScenario = (db: Database, reader: Reader, scenarioId: string) => db.transaction(tx => binItem(tx, reader, 'scenario', scenarioId))
+export const unbinScenario = (db: Database, reader: Reader, scenarioId: string) => db.transaction(async (tx) => {
+  await unbinItem(tx, reader, 'scenario', scenarioId)
+  return describeScenario(tx, reader, scenarioId)
+})

@@ -24,7 +24,7 @@ export async function findBenchScope(db: Handle, benchId: string, userId: string
 }
 
 /** Tables whose rows belong to a bench, are made by someone and can lie in the bin. */
-const ITEMS = {
+export const ITEMS = {
   'scenario': { table: scenarios, id: scenarios.scenarioId, owner: scenarios.createdBy },
   'run': { table: runs, id: runs.runId, owner: runs.savedBy },
   'recording': { table: recordings, id: recordings.recordingId, owner: recordings.createdBy },

@@ -13,6 +13,7 @@ import type { WeighAgainSchema, WeighUpCreateSchema, WeighUpDetail, WeighUpListS
 import type { WeighSettings, WeighUp } from '../../shared/schemas/weigh-up'
 import { badField, problem } from '../utils/problem'
 import { recordEvent } from './audit-trail'
+import { binItem, unbinItem } from './item-bin'
 import { cursorTime, readCursor, writeCursor } from './paging'
 import { readConditionData } from './recording-rows'
 import type { Reader } from './scenario-rows'
@@ -111,17 +112,8 @@ export async function weighAgain(db: Database, reader: Reader, weighUpId: string
   return describeWeighUp(db, reader, weighUpId)
 }
 
-export async function binWeighUp(db: Database, reader: Reader, weighUpId: string): Promise<void> {
-  await db.transaction(async (tx) => {
-    const done = await tx.update(weighUps).set({ deletedAt: sql`now()`, deletedBy: reader.userId }).where(and(eq(weighUps.weighUpId, weighUpId), isNull(weighUps.deletedAt))).returning({ version: weighUps.version })
-    if (!done.length) throw problem('not_found')
-    await recordEvent(tx, { kind: 'weigh-up-binned', actorId: reader.userId, benchId: reader.benchId, weighUpId })
-  })
-}
-export async function unbinWeighUp(db: Database, reader: Reader, weighUpId: string): Promise<WeighUpDetail> {
-  return db.transaction(async (tx) => {
-    const done = await tx.update(weighUps).set({ deletedAt: null, deletedBy: null }).where(and(eq(weighUps.weighUpId, weighUpId), sql`${weighUps.deletedAt} is not null`)).returning({ version: weighUps.version })
-    if (done.length) await recordEvent(tx, { kind: 'weigh-up-restored', actorId: reader.userId, benchId: reader.benchId, weighUpId })
-    return describeWeighUp(tx, reader, weighUpId)
-  })
-}
+export const binWeighUp = (db: Database, reader: Reader, weighUpId: string) => db.transaction(tx => binItem(tx, reader, 'weigh-up', weighUpId))
+export const unbinWeighUp = (db: Database, reader: Reader, weighUpId: string) => db.transaction(async (tx) => {
+  await unbinItem(tx, reader, 'weigh-up', weighUpId)
+  return describeWeighUp(tx, reader, weighUpId)
+})

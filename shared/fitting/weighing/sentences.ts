@@ -1,4 +1,5 @@
 /** What a weigh-up says in words: verdict, changes, noise, spread, notes. */
+import { capital } from '../../schemas/text'
 import type { WeighCandidate, WeighUp, WeighUpParameter, WeighVerdict } from '../../schemas/weigh-up'
 import { EXPLANATION_NAMES, SPOKEN_AS_MANY, type Explanation } from './explanations'
 import { placeName } from './joint-problem'
@@ -7,7 +8,6 @@ import type { WeighInput, Weighing } from './weigh-up'
 
 /** Names in a row: “a, b and c”. */
 export const listed = (names: readonly string[]): string => names.length < 2 ? names.join('') : `${names.slice(0, -1).join(', ')} and ${names[names.length - 1]!}`
-const capital = (text: string) => text.slice(0, 1).toUpperCase() + text.slice(1)
 const plural = (explanation: Explanation) => SPOKEN_AS_MANY.has(explanation)
 
 /** A number with three digits that mean something; large ones whole. @param value - any [any] */
